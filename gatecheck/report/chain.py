@@ -1,0 +1,100 @@
+"""A gate network as one line an engineer reads from driver to gate, and which networks are alike."""
+
+from __future__ import annotations
+
+from typing import TYPE_CHECKING
+
+from gatecheck.networks.evidence import name_of
+from gatecheck.networks.kinds import Sort
+from gatecheck.report.wording import safe
+
+if TYPE_CHECKING:
+    from collections.abc import Iterable, Sequence
+
+    from gatecheck.networks.find import Networks
+    from gatecheck.networks.model import EdgePaths, GateNetwork
+
+_DIODES = (Sort.DIODE, Sort.ZENER)
+
+
+def alike(networks: Networks) -> list[list[GateNetwork]]:
+    """Gates whose networks have the same shape and values, in the order of their first member."""
+    groups: dict[object, list[GateNetwork]] = {}
+    for gate in networks.gates:
+        groups.setdefault(_shape(networks, gate), []).append(gate)
+    return list(groups.values())
+
+
+def _shape(networks: Networks, gate: GateNetwork) -> object:
+    transistor = networks.design.parts[gate.transistor.part]
+
+    def said(parts: Iterable[str]) -> tuple[object, ...]:
+        return tuple((networks.circuit.kinds[p].sort, networks.design.parts[p].value) for p in parts)
+
+    drives = tuple((networks.design.parts[d.part].value, len(d.pins), d.edge, d.pins[0].function) for d in gate.drives)
+    shunts = tuple(map(said, (gate.pulldowns, gate.gate_capacitors, gate.clamps)))
+    parallel = len(gate.parallel_with), len(gate.alternates), tuple(part in gate.own_branch for part in gate.on.parts)
+    return transistor.value, drives, said(gate.on.parts), said(gate.off.parts), shunts, parallel
+
+
+def chain(networks: Networks, gate: GateNetwork) -> list[str]:
+    """The network drawn: one line, or one per edge where they differ."""
+    drive_on, drive_off = _drivers(networks, gate, "on"), _drivers(networks, gate, "off")
+    ways = [(drive_on, _way(networks, gate.on, "-->")), (drive_off, _way(networks, gate.off, "<--"))]
+    if drive_on == drive_off and gate.on.parts == gate.off.parts:
+        return [f"{drive_on} {_way(networks, gate.on, '--')} gate"] if gate.drives else ["no driver found -- gate"]
+    return [f"{edge:>3}: {drive} {way} gate" for edge, (drive, way) in zip(("on", "off"), ways, strict=True)]
+
+
+def shunts(networks: Networks, gate: GateNetwork) -> str:
+    """What hangs from the gate to its source."""
+    said = [
+        *(f"{_part(networks, part)} to source" for part in (*gate.pulldowns, *gate.gate_capacitors)),
+        *(f"clamp {_part(networks, part)}" for part in gate.clamps),
+    ]
+    return ", ".join(said)
+
+
+def _drivers(networks: Networks, gate: GateNetwork, edge: str) -> str:
+    mine = [drive for drive in gate.drives if drive.edge in (edge, "both")]
+    names = []
+    for drive in mine:
+        pins = "/".join(safe(pin.function or pin.number) for pin in drive.pins)
+        names.append(f"{safe(networks.design.parts[drive.part].reference)}.{pins}")
+    return " + ".join(names) or "nothing"
+
+
+def _way(networks: Networks, paths: EdgePaths, arrow: str) -> str:
+    """Parts in the order of current; those in parallel with each other stand in brackets."""
+    pieces: list[str] = []
+    branch: list[str] = []
+    for step in paths.steps:
+        text = _part(networks, step.part)
+        if paths.conducts and step.part not in paths.covering:
+            branch.append(text)
+            continue
+        if branch:
+            pieces.append(_bracket(branch))
+            branch = []
+        pieces.append(text)
+    if branch:
+        pieces.append(_bracket(branch))
+    end = "" if paths.conducts else " (open)"
+    return f" {arrow} ".join(["", *pieces, ""]).strip() + end
+
+
+def _bracket(branch: Sequence[str]) -> str:
+    return f"[{' | '.join(branch)}]"
+
+
+def _part(networks: Networks, key: str) -> str:
+    part = networks.design.parts[key]
+    sort = networks.circuit.kinds[key].sort
+    value = "" if sort in _DIODES else safe(part.value)
+    unfitted = "" if networks.circuit.kinds[key].fitted else " (not fitted)"
+    return f"{safe(part.reference)} {value}".strip() + unfitted
+
+
+def names(gates: Iterable[GateNetwork]) -> str:
+    """References of some gates, in natural order of the design."""
+    return " ".join(safe(name_of(gate.transistor.key)) for gate in gates)
