@@ -13,7 +13,7 @@ from gatecheck import __version__
 if TYPE_CHECKING:
     from collections.abc import Sequence
 
-    from gatecheck.finding import Report, Unread
+    from gatecheck.report_model import Report, Unread
 
 OK, FINDINGS, USAGE, UNREADABLE, FAULT = range(5)
 
@@ -102,9 +102,16 @@ def _parser() -> argparse.ArgumentParser:
     parser.add_argument("--version", action="version", version=f"gatecheck {__version__}")
     verbs = parser.add_subparsers(metavar="COMMAND", required=True)
     shared = argparse.ArgumentParser(add_help=False, allow_abbrev=False)
-    shared.add_argument("--format", choices=("terminal", "json"), default="terminal", help="what to write (default: terminal)")
+    shared.add_argument(
+        "--format", choices=("terminal", "json"), default="terminal", help="what to write (default: terminal)"
+    )
     shared.add_argument("--output", type=Path, metavar="FILE", help="write to a file instead of standard output")
-    shared.add_argument("--block-at", choices=("note", "warning", "error"), default="error", help="level that makes the exit code 1")
+    shared.add_argument(
+        "--block-at",
+        choices=("note", "warning", "error"),
+        default="error",
+        help="level that makes the exit code 1",
+    )
     shared.add_argument("-q", "--quiet", action="store_true", help="only what fails; nothing when all is well")
     shared.add_argument("--color", choices=("auto", "always", "never"), default="auto", help="NO_COLOR is honoured too")
     shared.add_argument("-v", "--verbose", action="store_true", help="show the trace of a fault")
@@ -119,7 +126,9 @@ def _parser() -> argparse.ArgumentParser:
     nets = verbs.add_parser("nets", parents=[shared], help="the connectivity as read from one file", allow_abbrev=False)
     nets.add_argument("file", metavar="FILE", type=Path, help="a board or a netlist")
     nets.set_defaults(run=_nets)
-    rules = verbs.add_parser("rules", parents=[shared], help="the rules; one rule's reason, limits, sources", allow_abbrev=False)
+    rules = verbs.add_parser(
+        "rules", parents=[shared], help="the rules; one rule's reason, limits, sources", allow_abbrev=False
+    )
     rules.add_argument("id", metavar="ID", nargs="?", help="one rule, whole")
     rules.set_defaults(run=_rules)
     return parser

@@ -1,14 +1,10 @@
-"""What a review says: findings with verdict, level, places and limit, and the Report that holds them."""
+"""What a rule says of a design: findings with verdict, level, places and limit."""
 
 from __future__ import annotations
 
 import hashlib
-from dataclasses import dataclass, field
+from dataclasses import dataclass
 from enum import StrEnum
-from typing import TYPE_CHECKING
-
-if TYPE_CHECKING:
-    from collections.abc import Mapping
 
 
 class Verdict(StrEnum):
@@ -121,65 +117,6 @@ class Finding:
     ask: tuple[Ask, ...] = ()
     places: tuple[Spot, ...] = ()
     advice: str = ""
-
-
-@dataclass(frozen=True, slots=True)
-class NotJudged:
-    """Something a review would look at and could not, with the reason and what it needs."""
-
-    rule: str | None
-    subject: str
-    reason: str
-    needs: str
-
-
-@dataclass(frozen=True, slots=True)
-class Unread:
-    """A file, or a form in it, that could not be read."""
-
-    path: str
-    line: int
-    column: int
-    message: str
-    next_step: str
-    excerpt: str = ""
-
-
-@dataclass(frozen=True, slots=True)
-class InputFile:
-    """A file that was read."""
-
-    path: str
-    kind: str
-    sha256: str
-
-
-@dataclass(frozen=True, slots=True)
-class Report:
-    """All a review found out, ready to be written in any format.
-
-    `networks` holds one entry per design that was read, in the order of `inputs`.
-    """
-
-    inputs: tuple[InputFile, ...]
-    networks: tuple[object, ...]
-    findings: tuple[Finding, ...]
-    not_judged: tuple[NotJudged, ...]
-    unread: tuple[Unread, ...]
-    spots: Mapping[str, Spot] = field(default_factory=dict)
-
-    def count(self, verdict: Verdict, *, level: Level | None = None, weak: bool | None = None) -> int:
-        """How many findings have this verdict, of one level, or resting on weak origins or not."""
-        return sum(
-            finding.verdict is verdict
-            and (level is None or finding.level is level)
-            and (weak is None or (finding.rests_on in WEAK_ORIGINS) is weak)
-            for finding in self.findings
-        )
-
-    def blocks(self, level: Level) -> bool:
-        """Does any fail reach the blocking level?"""
-        return any(f.verdict is Verdict.FAIL and at_least(f.level, level) for f in self.findings)
 
 
 def fingerprint(*identity: str) -> str:

@@ -8,9 +8,9 @@ from typing import TYPE_CHECKING
 
 from gatecheck.design.build import from_board, from_netlist
 from gatecheck.files import read_bytes, shown_path
-from gatecheck.finding import InputFile
 from gatecheck.parse.document import Document, open_document
 from gatecheck.parse.sniff import FileKind, sniff
+from gatecheck.report_model import InputFile
 
 if TYPE_CHECKING:
     from pathlib import Path

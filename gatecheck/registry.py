@@ -58,6 +58,5 @@ def _modules() -> list[str]:
     names = []
     for topic in sorted(entry.name for entry in pkgutil.iter_modules([str(folder)]) if entry.ispkg):
         for entry in pkgutil.iter_modules([str(folder / topic)]):
-            if not entry.name.startswith("_"):
-                names.append(f"gatecheck.rules.{topic}.{entry.name}")
+            names += [] if entry.name.startswith("_") else [f"gatecheck.rules.{topic}.{entry.name}"]
     return names

@@ -7,10 +7,11 @@ from typing import TYPE_CHECKING
 
 from gatecheck.errors import GatecheckError, InputError
 from gatecheck.files import shown_path
-from gatecheck.finding import Finding, InputFile, NotJudged, Report, Spot, Unread
+from gatecheck.finding import Finding, Spot
 from gatecheck.load import Loaded, load_design
 from gatecheck.networks.find import Networks, find_networks
 from gatecheck.parse.project import Project, find_projects
+from gatecheck.report_model import InputFile, NotJudged, Report, Unread
 
 if TYPE_CHECKING:
     from collections.abc import Callable, Iterable
@@ -73,7 +74,8 @@ def _review_one(loaded: Loaded, project: Project, found: _Gathered, *, with_rule
     if left > 0:
         found.unread.append(Unread(loaded.source.path, 0, 0, f"{left} more forms could not be read", ""))
     found.not_judged += [
-        NotJudged(None, shown_path(path), reason, "give this file alone to review it") for path, reason in project.passed_over
+        NotJudged(None, shown_path(path), reason, "give this file alone to review it")
+        for path, reason in project.passed_over
     ]
     found.not_judged += [NotJudged(None, loaded.source.path, note, "") for note in loaded.document.notes]
     if not with_rules or not networks.gates:

@@ -10,7 +10,19 @@ from dataclasses import dataclass
 from functools import cached_property
 from typing import TYPE_CHECKING
 
-from gatecheck.finding import WEAK_ORIGINS, Ask, Finding, Level, Limit, Origin, Quantity, Spot, Verdict, fingerprint, least_trusted
+from gatecheck.finding import (
+    WEAK_ORIGINS,
+    Ask,
+    Finding,
+    Level,
+    Limit,
+    Origin,
+    Quantity,
+    Spot,
+    Verdict,
+    fingerprint,
+    least_trusted,
+)
 
 if TYPE_CHECKING:
     from collections.abc import Callable, Iterable, Iterator, Mapping
@@ -20,7 +32,19 @@ if TYPE_CHECKING:
     from gatecheck.networks.find import Networks
     from gatecheck.networks.model import EdgePaths, GateNetwork, Switch
 
-__all__ = ["Ask", "Design", "Finding", "Gate", "Level", "Limit", "Origin", "Quantity", "Rule", "Verdict", "Say"]
+__all__ = [
+    "Ask",
+    "Design",
+    "Finding",
+    "Gate",
+    "Level",
+    "Limit",
+    "Origin",
+    "Quantity",
+    "Rule",
+    "Say",
+    "Verdict",
+]
 
 EDGES = ("on", "off")
 
@@ -172,7 +196,15 @@ def grouped(findings: Iterable[Finding]) -> list[Finding]:
     """Findings that say the same of several subjects, said once, with the others in `also`."""
     groups: dict[object, list[Finding]] = {}
     for finding in findings:
-        key = (finding.rule, finding.verdict, finding.level, finding.message, finding.edge, finding.rests_on, finding.advice)
+        key = (
+            finding.rule,
+            finding.verdict,
+            finding.level,
+            finding.message,
+            finding.edge,
+            finding.rests_on,
+            finding.advice,
+        )
         groups.setdefault((key, finding.value, finding.limit), []).append(finding)
     return [_merged(group) for group in groups.values()]
 

@@ -53,7 +53,10 @@ def _pin_patterns() -> Mapping[str, re.Pattern[str]]:
     terminals = ("gate", "source", "drain", "emitter", "collector", "kelvin", "base")
     return {
         group: re.compile(
-            "|".join(name.upper().replace("\\D", "\\d").replace("#", r"\d{0,2}" if group in terminals else _CHANNEL) for name in names)
+            "|".join(
+                name.upper().replace("\\D", "\\d").replace("#", r"\d{0,2}" if group in terminals else _CHANNEL)
+                for name in names
+            )
         )
         for group, names in _data("pin_names").items()
     }

@@ -23,9 +23,7 @@ def from_board(board: BoardFile) -> Design:
     """The Design of a board alone."""
     path = board.document.path
     names = _identities(form.reference for form in board.footprints)
-    parts = {
-        name: _part_of_footprint(name, form, path) for name, form in zip(names, board.footprints, strict=True)
-    }
+    parts = {name: _part_of_footprint(name, form, path) for name, form in zip(names, board.footprints, strict=True)}
     return Design(path, "board", parts, _nets(parts.values()))
 
 
@@ -151,7 +149,9 @@ def _part_of_component(
             )
         )
     on_nets = {node.pin for _, node in nodes}
-    pins += [Pin(name, pin.number, pin.name, pin.electrical, "") for pin in library.values() if pin.number not in on_nets]
+    pins += [
+        Pin(name, pin.number, pin.name, pin.electrical, "") for pin in library.values() if pin.number not in on_nets
+    ]
     flags = {flag.lower() for flag in component.flags}
     return Part(
         id=name,

@@ -156,7 +156,9 @@ def _junctions(pins: tuple[Pin, ...], nets: list[str]) -> list[tuple[str, str, b
     cathodes = [pin.net for pin, end in names.items() if end == "K" and pin.net]
     middle = [pin.net for pin, end in names.items() if end == "M" and pin.net]
     if anodes and cathodes:
-        ways = set(product(anodes, middle)) | set(product(middle, cathodes)) if middle else set(product(anodes, cathodes))
+        ways = (
+            set(product(anodes, middle)) | set(product(middle, cathodes)) if middle else set(product(anodes, cathodes))
+        )
         return [(a, k, True) for a, k in sorted(ways) if a != k]
     if middle and (anodes or cathodes):
         ways = set(product(anodes or middle, cathodes or middle))

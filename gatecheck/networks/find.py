@@ -9,8 +9,9 @@ from typing import TYPE_CHECKING
 from gatecheck.networks.circuit import Circuit
 from gatecheck.networks.kinds import Sort
 from gatecheck.networks.model import GateNetwork, Switch
-from gatecheck.networks.roles import Surroundings, judge_roles
+from gatecheck.networks.roles import judge_roles
 from gatecheck.networks.shunts import find_shunts
+from gatecheck.networks.surroundings import Surroundings
 from gatecheck.networks.terminals import Transistor, find_transistors
 from gatecheck.networks.walk import Walk, walk
 
@@ -103,7 +104,9 @@ def _alternates(design: Design, transistors: list[Transistor]) -> dict[_Key, tup
     found: dict[_Key, tuple[_Key, ...]] = {}
     for group in groups.values():
         for one in group:
-            others = (t.key for t in group if t.part != one.part and _overlap(design.parts[one.part], design.parts[t.part]))
+            others = (
+                t.key for t in group if t.part != one.part and _overlap(design.parts[one.part], design.parts[t.part])
+            )
             found[one.key] = tuple(others)
     return {key: others for key, others in found.items() if others}
 

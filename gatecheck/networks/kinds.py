@@ -86,7 +86,12 @@ _VALUE_KIND = {
     Sort.DIODE: Kind.DIODE,
     Sort.ZENER: Kind.DIODE,
 }
-_SORT_OF_VALUE = {Kind.BEAD: Sort.BEAD, Kind.INDUCTOR: Sort.INDUCTOR, Kind.THERMISTOR: Sort.FUSE, Kind.CHOKE: Sort.WINDING}
+_SORT_OF_VALUE = {
+    Kind.BEAD: Sort.BEAD,
+    Kind.INDUCTOR: Sort.INDUCTOR,
+    Kind.THERMISTOR: Sort.FUSE,
+    Kind.CHOKE: Sort.WINDING,
+}
 _TWO_TERMINALS = (Sort.RESISTOR, Sort.BEAD, Sort.INDUCTOR, Sort.CAPACITOR, Sort.FUSE)
 _MANY_PINS = 6
 
@@ -109,10 +114,14 @@ def kind_of(part: Part) -> Kinded:
 def _sort(part: Part) -> Sort:
     if gated(part.pins) or bipolar(part):
         return Sort.TRANSISTOR
-    named = " ".join((part.library.rpartition(":")[2], part.footprint))
+    named = f"{part.library.rpartition(':')[2]} {part.footprint}"
     by_word = next((sort for pattern, sort in _WORDS if pattern.search(named)), None)
     by_letter = _by_letter(part)
-    if by_word in (Sort.NET_TIE, Sort.TEST_POINT, Sort.CONNECTOR) or by_letter in (None, Sort.CHIP, Sort.OTHER):
+    if by_word in (Sort.NET_TIE, Sort.TEST_POINT, Sort.CONNECTOR) or by_letter in (
+        None,
+        Sort.CHIP,
+        Sort.OTHER,
+    ):
         sort = by_word or by_letter or _by_pins(part)
     elif by_letter in (Sort.DIODE, Sort.INDUCTOR, Sort.RESISTOR, Sort.FUSE):
         sort = by_word or (Sort.ZENER if by_letter is Sort.DIODE and _limits_voltage(part) else by_letter)
@@ -139,7 +148,7 @@ def _by_pins(part: Part) -> Sort:
 
 
 def _limits_voltage(part: Part) -> bool:
-    said = " ".join((part.value, part.description, part.keywords, part.library))
+    said = f"{part.value} {part.description} {part.keywords} {part.library}"
     return re.search(r"zener|tvs|transil|suppressor|bidirectional", said, re.IGNORECASE) is not None
 
 
@@ -161,7 +170,7 @@ def bipolar(part: Part) -> bool:
     names = [plain_pin_name(pin.function) for pin in part.pins if pin.function]
     if any(pin_is("base", name) for name in names):
         return any(pin_is("emitter", name) for name in names) and any(pin_is("collector", name) for name in names)
-    symbol = " ".join((part.library, part.value, part.description))
+    symbol = f"{part.library} {part.value} {part.description}"
     return bool(word_in("bipolar", symbol.replace("_", " "))) and not any(names)
 
 

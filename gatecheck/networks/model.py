@@ -14,8 +14,9 @@ ON, OFF = "on", "off"
 
 @dataclass(frozen=True, slots=True)
 class Evidence:
-    """One reason for a role; a negative weight speaks against hard switching."""
+    """One reason for a role; a negative weight speaks against hard switching. `name` is its catalogue key."""
 
+    name: str
     text: str
     weight: float
 
@@ -59,12 +60,15 @@ class Step:
 
 @dataclass(frozen=True, slots=True)
 class EdgePaths:
-    """All conducting ways of one edge. `steps` runs from driver to gate, each part once.
+    """All conducting ways of one edge.
 
-    `covering` are the parts that every conducting way passes: a bead among them damps this edge whole.
+    `steps` runs from driver to gate, each part once, over the ways that carry most of the current: where a
+    diode branch bypasses a resistor, the diode branch. `ways` are all of them, way by way. `covering` are the
+    parts that every conducting way passes: a bead among them damps this edge whole.
     """
 
     steps: tuple[Step, ...]
+    ways: tuple[tuple[str, ...], ...]
     covering: frozenset[str]
     conducts: bool
 

@@ -45,7 +45,7 @@ def find_shunts(circuit: Circuit, transistor: Transistor, walked: Walk) -> Shunt
         ),
         gate_capacitors=_parts(_capacitors(circuit, nets, targets, walked)),
         clamps=_parts(_clamps(circuit, nets, targets)),
-        return_net=_return_net(circuit, transistor, references & home),
+        return_net=_return_net(transistor, references & home),
     )
 
 
@@ -84,14 +84,20 @@ def _clamps(circuit: Circuit, nets: list[str], targets: frozenset[str]) -> Itera
         yield from (e.part for e in circuit.between(net, targets, *diodes) if e.fitted)
         for first in circuit.elements(net):
             middle = first.other(net)
-            if first.sort not in diodes or not first.fitted or middle in targets or middle in nets or circuit.is_rail(middle):
+            if (
+                first.sort not in diodes
+                or not first.fitted
+                or middle in targets
+                or middle in nets
+                or circuit.is_rail(middle)
+            ):
                 continue
             for second in circuit.between(middle, targets, *diodes):
                 if second.fitted and Sort.ZENER in (first.sort, second.sort):
                     yield from (first.part, second.part)
 
 
-def _return_net(circuit: Circuit, transistor: Transistor, references: frozenset[str]) -> str:
+def _return_net(transistor: Transistor, references: frozenset[str]) -> str:
     """The Kelvin source where there is one, else the driver's reference near the source, else the source."""
     if transistor.kelvin_net:
         return transistor.kelvin_net

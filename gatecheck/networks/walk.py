@@ -10,6 +10,7 @@
 
 from __future__ import annotations
 
+from collections import deque
 from dataclasses import dataclass, field
 from typing import TYPE_CHECKING, NamedTuple
 
@@ -31,6 +32,7 @@ from gatecheck.networks.ports import (
 if TYPE_CHECKING:
     from collections.abc import Iterable
 
+    from gatecheck.design.model import Pin
     from gatecheck.networks.circuit import Circuit, Element
     from gatecheck.networks.terminals import Transistor
 
@@ -61,7 +63,7 @@ _Way = tuple[_Hop, ...]  # from gate to driver
 
 @dataclass(frozen=True, slots=True)
 class Walk:
-    """What a gate is driven by and over which ways; `nets` are all nets of the ways, gate and driver included."""
+    """What a gate is driven by and over which ways; `nets` are all nets of the ways, both ends included."""
 
     drives: tuple[Drive, ...]
     rank: float
@@ -101,12 +103,22 @@ def walk(circuit: Circuit, transistor: Transistor, gate_nets: frozenset[str]) ->
     blocked = [edge for edge in (on, off) if not edge.conducts]
     open_parts = sorted(unfitted & {part for edge in blocked for part in edge.parts})
     return Walk(
-        drives, best_rank(chosen), on, off, frozenset(nets), tuple(open_parts), limit_ohm == _FEED_OHM and bool(drives)
+        drives,
+        best_rank(chosen),
+        on,
+        off,
+        frozenset(nets),
+        tuple(open_parts),
+        limit_ohm == _FEED_OHM and bool(drives),
     )
 
 
 def _reach(
-    circuit: Circuit, transistor: Transistor, gate_nets: frozenset[str], barred: frozenset[str], limit_ohm: float
+    circuit: Circuit,
+    transistor: Transistor,
+    gate_nets: frozenset[str],
+    barred: frozenset[str],
+    limit_ohm: float,
 ) -> _Reached:
     start = transistor.gate_net
     reached, edge = _Reached(), [start]
@@ -196,18 +208,19 @@ def _ways(circuit: Circuit, gate: str, driver: str, reached: _Reached, limit_ohm
     if gate == driver:
         return [()]
     found: list[_Way] = []
-    stack: list[tuple[str, _Way, frozenset[str]]] = [(gate, (), frozenset({gate}))]
-    while stack and len(found) < _MAX_WAYS:
-        here, way, seen = stack.pop()
-        for element in reversed(circuit.elements(here)):
+    # Shortest first, so that a bound that is hit cuts off the long ones.
+    open_ways: deque[tuple[str, _Way, frozenset[str]]] = deque([(gate, (), frozenset({gate}))])
+    while open_ways and len(found) < _MAX_WAYS:
+        here, way, seen = open_ways.popleft()
+        for element in circuit.elements(here):
             net = element.other(here)
             if net in seen or net not in reached.nets or not _passes(element, limit_ohm):
                 continue
             hop = _Hop(element, here, net)
             if net == driver:
                 found.append((*way, hop))
-            elif net not in reached.leaves and len(way) < _MAX_HOPS and len(stack) < _MAX_WAYS:
-                stack.append((net, (*way, hop), seen | {net}))
+            elif net not in reached.leaves and len(way) < _MAX_HOPS and len(open_ways) < _MAX_WAYS:
+                open_ways.append((net, (*way, hop), seen | {net}))
     return found
 
 
@@ -218,12 +231,23 @@ def _edge(edge: str, drives: Iterable[Drive], ways: dict[str, list[_Way]]) -> Ed
     position: dict[str, int] = {}
     steps: dict[str, Step] = {}
     # Where nothing conducts, the ways are shown all the same, so that the report can name what is in the way.
-    for way in conducting or mine:
-        hops = [hop for hop in reversed(way) if hop.element.sort is not Sort.NET_TIE]
-        for i, hop in enumerate(hops):
+    for way in _main(conducting or mine):
+        for i, hop in enumerate(_hops(way)):
             part = hop.element.part
             position[part] = max(position.get(part, 0), i)
             steps.setdefault(part, Step(part, hop.element.sort, hop.outer, hop.inner))
     ordered = tuple(steps[part] for part in sorted(steps, key=lambda part: position[part]))
     passed = [frozenset(hop.element.part for hop in way) for way in conducting]
-    return EdgePaths(ordered, frozenset.intersection(*passed) if passed else frozenset(), bool(conducting))
+    all_ways = tuple(dict.fromkeys(tuple(hop.element.part for hop in _hops(way)) for way in conducting or mine))
+    return EdgePaths(ordered, all_ways, frozenset.intersection(*passed) if passed else frozenset(), bool(conducting))
+
+
+def _hops(way: _Way) -> list[_Hop]:
+    """From driver to gate, without the net ties, which are copper and no parts."""
+    return [hop for hop in reversed(way) if hop.element.sort is not Sort.NET_TIE]
+
+
+def _main(ways: list[_Way]) -> list[_Way]:
+    """The ways that carry most of an edge's current: a diode branch bypasses the branch beside it."""
+    through_diode = [way for way in ways if any(hop.element.sort is Sort.DIODE for hop in way)]
+    return through_diode or ways

@@ -9,7 +9,6 @@ from __future__ import annotations
 from dataclasses import dataclass, field
 from typing import TYPE_CHECKING
 
-from gatecheck.errors import InputError
 from gatecheck.parse.document import Document, Malformed, Span
 from gatecheck.parse.fields import flag, number, numbers, text, whole
 from gatecheck.parse.sexpr import Text
@@ -17,6 +16,7 @@ from gatecheck.parse.sexpr import Text
 if TYPE_CHECKING:
     from collections.abc import Callable, Mapping
 
+    from gatecheck.errors import InputError
     from gatecheck.parse.sexpr import Node
 
 # Board format versions are dates. From this one on, layers are called by canonical names and the user's own

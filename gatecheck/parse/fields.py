@@ -1,4 +1,7 @@
-"""Typed getters on parsed forms: a wrong or missing field ends in Malformed with its place, never a KeyError."""
+"""Typed getters on parsed forms.
+
+A wrong or missing field ends in Malformed with its place, never a KeyError.
+"""
 
 from __future__ import annotations
 
@@ -53,7 +56,7 @@ def numbers(node: Node, count: int, *, at_least: int | None = None) -> tuple[flo
 
 
 def flag(node: Node | None, *, bare: bool = False) -> bool:
-    """One of the four spellings of a boolean: bare word, `(locked)`, `(locked yes|no)`, `(locked true|false)`.
+    """One of four spellings of a boolean: bare word, `(locked)`, `(locked yes|no)`, `(locked true|false)`.
 
     `bare` says that the bare word was found in the enclosing form.
     """

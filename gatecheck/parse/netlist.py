@@ -145,8 +145,9 @@ def _component(node: Node, start: int) -> Component:
         library=_said(source, "lib") if source is not None else "",
         part=_said(source, "part") if source is not None else "",
         description=_said(node, "description") or (_said(source, "description") if source is not None else ""),
-        symbol_path=(_said(sheet, "tstamps") if sheet is not None else "/")
-        + (stamps.atoms() or [""])[0] if stamps is not None else "",
+        symbol_path=(_said(sheet, "tstamps") if sheet is not None else "/") + (stamps.atoms() or [""])[0]
+        if stamps is not None
+        else "",
         units=_units(node),
         start=start,
     )
@@ -154,7 +155,10 @@ def _component(node: Node, start: int) -> Component:
 
 def _units(node: Node) -> tuple[tuple[str, tuple[str, ...]], ...]:
     return tuple(
-        (_said(unit, "name"), tuple(_said(pin, "num") for pins in unit.forms("pins") for pin in pins.forms("pin")))
+        (
+            _said(unit, "name"),
+            tuple(_said(pin, "num") for pins in unit.forms("pins") for pin in pins.forms("pin")),
+        )
         for units in node.forms("units")
         for unit in units.forms("unit")
     )

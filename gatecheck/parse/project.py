@@ -47,7 +47,11 @@ def find_projects(paths: list[Path]) -> list[Project]:
         if main.suffix.lower() in (_SHEET, _PROJECT):
             board = stem.with_name(stem.name + _BOARD)
             main = board if board.is_file() else main
-        others = [(file, "the board beside it is reviewed") for file in unique if file != main and file.suffix.lower() == _NETLIST]
+        others = [
+            (file, "the board beside it is reviewed")
+            for file in unique
+            if file != main and file.suffix.lower() == _NETLIST
+        ]
         projects.append(Project(main, tuple(others)))
     return projects
 
@@ -79,13 +83,15 @@ def _designs_below(folder: Path) -> list[Path]:
         seen += len(names) + len(folders)
         if seen > _MAX_ENTRIES:
             raise InputError(
-                f"this folder holds more than {_MAX_ENTRIES} files", "name the design's own folder", shown_path(folder)
+                f"this folder holds more than {_MAX_ENTRIES} files",
+                "name the design's own folder",
+                shown_path(folder),
             )
         found += [Path(here, name) for name in sorted(names) if _is_design(name)]
     return found
 
 
 def _is_design(name: str) -> bool:
-    stem, suffix = os.path.splitext(name)
+    stem, suffix = Path(name).stem, Path(name).suffix
     copy = name.startswith((*_COPY_PREFIXES, ".")) or stem.lower().endswith(_PANEL_SUFFIXES)
     return suffix.lower() in _READ and not copy

@@ -69,21 +69,24 @@ class Reader(Parser):  # type: ignore[misc]  # sexpdata ships no types
         self.closing_brackets = {")"}
 
     def form(self, text: str) -> Node:
-        """The tree of one form; `text` runs from its opening to its closing bracket, offsets count from there."""
+        """The tree of one form; `text` runs from its opening to its closing bracket."""
         self.string = text
         return self.parse_sexp(1)[1]
 
     def parse_str(self, i: int) -> tuple[int, str]:
+        """The text that starts at a quote, and where it ends."""
         end = _TEXT_END.match(self.string, i + 1).end()  # type: ignore[union-attr]  # matches empty too
         raw = self.string[i + 1 : end]
         return end + 1, _ESCAPE.sub(_unescape, raw) if "\\" in raw else raw
 
     def parse_atom(self, i: int) -> tuple[int, str]:
+        """The bare word at `i`, unchanged."""
         match = _WORD_END.search(self.string, i)
         end = match.start() if match else len(self.string)
         return end, self.string[i:end]
 
     def parse_sexp(self, i: int) -> tuple[int, Node]:
+        """The items from `i` to the closing bracket."""
         string, node = self.string, Node()
         node.start = i - 1
         skip = _SPACE.match
@@ -113,4 +116,3 @@ def _unescape(match: re.Match[str]) -> str:
     if code[0] in "01234567":
         return chr(int(code, 8) & 0xFF)
     return _ESCAPED.get(code, code)
-

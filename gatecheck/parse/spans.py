@@ -99,7 +99,8 @@ def _after_odd_backslashes(chunk: NDArray[np.uint8], places: NDArray[np.int64]) 
     run = np.searchsorted(starts, places) - 1
     behind = (places > 0) & (run >= 0) & (chunk[np.maximum(places - 1, 0)] == _BACKSLASH)
     length = places - starts[np.maximum(run, 0)]
-    return behind & (length % 2 == 1)
+    odd: NDArray[np.bool_] = behind & (length % 2 == 1)
+    return odd
 
 
 def _bad_level(places: NDArray[np.int64], level: NDArray[np.int64]) -> Broken | None:

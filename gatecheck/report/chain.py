@@ -2,19 +2,22 @@
 
 from __future__ import annotations
 
+import re
 from typing import TYPE_CHECKING
 
-from gatecheck.networks.evidence import name_of
 from gatecheck.networks.kinds import Sort
+from gatecheck.networks.surroundings import name_of
 from gatecheck.report.wording import safe
 
 if TYPE_CHECKING:
-    from collections.abc import Iterable, Sequence
+    from collections.abc import Iterable
 
     from gatecheck.networks.find import Networks
     from gatecheck.networks.model import EdgePaths, GateNetwork
 
 _DIODES = (Sort.DIODE, Sort.ZENER)
+# What tells the channels of a driver or connector apart, at the end of a pin's name.
+_CHANNEL = re.compile(r"(?<=[A-Z_])(?:_?[ABCUVW]|_?\d+)$")
 
 
 def alike(networks: Networks) -> list[list[GateNetwork]]:
@@ -31,9 +34,21 @@ def _shape(networks: Networks, gate: GateNetwork) -> object:
     def said(parts: Iterable[str]) -> tuple[object, ...]:
         return tuple((networks.circuit.kinds[p].sort, networks.design.parts[p].value) for p in parts)
 
-    drives = tuple((networks.design.parts[d.part].value, len(d.pins), d.edge, d.pins[0].function) for d in gate.drives)
+    drives = tuple(
+        (
+            networks.design.parts[d.part].value,
+            len(d.pins),
+            d.edge,
+            _CHANNEL.sub("", d.pins[0].function.upper()),
+        )
+        for d in gate.drives
+    )
     shunts = tuple(map(said, (gate.pulldowns, gate.gate_capacitors, gate.clamps)))
-    parallel = len(gate.parallel_with), len(gate.alternates), tuple(part in gate.own_branch for part in gate.on.parts)
+    parallel = (
+        len(gate.parallel_with),
+        len(gate.alternates),
+        tuple(part in gate.own_branch for part in gate.on.parts),
+    )
     return transistor.value, drives, said(gate.on.parts), said(gate.off.parts), shunts, parallel
 
 
@@ -65,26 +80,30 @@ def _drivers(networks: Networks, gate: GateNetwork, edge: str) -> str:
 
 
 def _way(networks: Networks, paths: EdgePaths, arrow: str) -> str:
-    """Parts in the order of current; those in parallel with each other stand in brackets."""
-    pieces: list[str] = []
-    branch: list[str] = []
-    for step in paths.steps:
-        text = _part(networks, step.part)
-        if paths.conducts and step.part not in paths.covering:
-            branch.append(text)
-            continue
-        if branch:
-            pieces.append(_bracket(branch))
-            branch = []
-        pieces.append(text)
-    if branch:
-        pieces.append(_bracket(branch))
+    """Parts from driver to gate; branches in parallel stand in brackets, `+` joins what is in series there."""
+    common = [part for part in paths.parts if part in paths.covering]
+    gaps: list[dict[tuple[str, ...], None]] = [{} for _ in range(len(common) + 1)]
+    for way in paths.ways:
+        pieces: list[list[str]] = [[]]
+        for part in way:
+            if part in paths.covering:
+                pieces.append([])
+            else:
+                pieces[-1].append(part)
+        for gap, piece in zip(gaps, pieces, strict=True):
+            gap[tuple(piece)] = None
+    shown = [_bracket(networks, gaps[0])]
+    for part, gap in zip(common, gaps[1:], strict=True):
+        shown += [_part(networks, part), _bracket(networks, gap)]
     end = "" if paths.conducts else " (open)"
-    return f" {arrow} ".join(["", *pieces, ""]).strip() + end
+    return f" {arrow} ".join(["", *filter(None, shown), ""]).strip() + end
 
 
-def _bracket(branch: Sequence[str]) -> str:
-    return f"[{' | '.join(branch)}]"
+def _bracket(networks: Networks, branches: Iterable[tuple[str, ...]]) -> str:
+    said = [" + ".join(_part(networks, part) for part in branch) or "link" for branch in branches]
+    if len(said) > 1:
+        return f"[{' | '.join(said)}]"
+    return said[0] if said and said[0] != "link" else ""
 
 
 def _part(networks: Networks, key: str) -> str:

@@ -11,9 +11,10 @@ from gatecheck.report.wording import CAUTIONS, summary
 if TYPE_CHECKING:
     from collections.abc import Iterable, Mapping
 
-    from gatecheck.finding import Finding, Limit, Quantity, Report, Spot
+    from gatecheck.finding import Finding, Limit, Quantity, Spot
     from gatecheck.networks.find import Networks
     from gatecheck.networks.model import GateNetwork, Switch
+    from gatecheck.report_model import Report
     from gatecheck.rulekit import Rule
 
 _Key = tuple[str, "str | None"]
@@ -166,7 +167,13 @@ def _finding(finding: Finding) -> dict[str, Any]:
 def _quantity(value: Quantity | None) -> dict[str, Any] | None:
     if value is None:
         return None
-    return {"low": value.low, "nominal": value.nominal, "high": value.high, "unit": value.unit, "origin": value.origin.value}
+    return {
+        "low": value.low,
+        "nominal": value.nominal,
+        "high": value.high,
+        "unit": value.unit,
+        "origin": value.origin.value,
+    }
 
 
 def _limit(limit: Limit | None) -> dict[str, Any] | None:

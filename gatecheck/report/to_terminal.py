@@ -10,15 +10,16 @@ from io import StringIO
 from typing import TYPE_CHECKING
 
 from gatecheck.finding import Level, Verdict
-from gatecheck.networks.evidence import name_of
+from gatecheck.networks.surroundings import name_of
 from gatecheck.report.chain import alike, chain, names, shunts
 from gatecheck.report.wording import SHORT_CAUTION, counted, safe, summary
 
 if TYPE_CHECKING:
     from collections.abc import Iterable, Mapping
 
-    from gatecheck.finding import Finding, Report, Spot
+    from gatecheck.finding import Finding, Spot
     from gatecheck.networks.find import Networks
+    from gatecheck.report_model import Report
     from gatecheck.rulekit import Rule
 
 # (text, style); styles are rich's.
@@ -46,8 +47,12 @@ def report_text(report: Report, *, color: bool, quiet: bool) -> str:
         lines += _finding(finding)
     if acting:
         lines.append([])
+    reasons: dict[str, list[str]] = {}
     for entry in report.not_judged:
-        lines.append([("not judged  ", "dim"), (f"{safe(entry.subject)}: {safe(entry.reason)}", "")])
+        reasons.setdefault(entry.reason, []).append(safe(entry.subject))
+    for reason, subjects in reasons.items():
+        who = subjects[0] if len(subjects) == 1 else f"{len(subjects)} designs"
+        lines.append([("not judged ", "dim"), (f"{who}: {safe(reason)}", "")])
     if report.not_judged:
         lines.append([])
     if report.inputs:
@@ -94,7 +99,11 @@ def _networks(networks: Networks) -> list[_Line]:
     switching = [s for s in networks.switches if s.role == "switching"]
     others = len(networks.switches) - len(switching)
     groups = alike(networks)
-    head = f"{counted(len(switching), 'switching gate')} in {counted(len(groups), 'sort')} of network" if switching else "no switching gates"
+    head = (
+        f"{counted(len(switching), 'switching gate')} in {counted(len(groups), 'sort')} of network"
+        if switching
+        else "no switching gates"
+    )
     left = f"   {counted(others, 'other transistor')} left alone (`gatecheck gates` says why)" if others else ""
     lines: list[_Line] = [[(safe(networks.design.source), "bold"), (f"   {head}{left}", "")], []]
     roles = {s.transistor.key: s for s in switching}
@@ -115,9 +124,9 @@ def _networks(networks: Networks) -> list[_Line]:
 
 def _company(parallel: Iterable[tuple[str, str | None]], alternates: Iterable[tuple[str, str | None]]) -> str:
     said = []
-    others = " ".join(safe(name_of(key)) for key in parallel)
-    if others:
-        said.append(f"in parallel with {others}")
+    count = len(tuple(parallel)) + 1
+    if count > 1:
+        said.append(f"{count} switches in parallel")
     places = " ".join(safe(name_of(key)) for key in alternates)
     if places:
         said.append(f"in the place of {places}")
@@ -135,28 +144,43 @@ def _finding(finding: Finding) -> list[_Line]:
     edge = f", {finding.edge} edge" if finding.edge else ""
     style = _STYLES[finding.level]
     lines: list[_Line] = [
-        [(f"{word:<10} ", style), (f"{finding.rule:<16} ", ""), (f"{subjects}{edge}: {safe(finding.message)}", "")]
+        [
+            (f"{word:<10} ", style),
+            (f"{finding.rule:<16} ", ""),
+            (f"{subjects}{edge}: {safe(finding.message)}", ""),
+        ]
     ]
     pad = " " * 28
     if finding.verdict is Verdict.FAIL:
         lines += [[(pad + _place(place), "dim")] for place in finding.places[:_MAX_PLACES]]
     if finding.ask:
-        wanted = ", ".join(f"{ask.datum.replace('_', ' ')} of {safe(ask.part)}" for ask in finding.ask[:_MAX_PLACES])
-        lines.append([(f"{pad}would settle it: {wanted}", "dim")])
+        wanted: dict[str, list[str]] = {}
+        for ask in finding.ask:
+            wanted.setdefault(ask.datum.replace("_", " "), []).append(safe(ask.part))
+        said = "; ".join(f"{datum} of {' '.join(parts)}" for datum, parts in wanted.items())
+        lines.append([(f"{pad}would settle it: {said}", "dim")])
     if finding.advice:
         lines.append([(f"{pad}{finding.advice}", "")])
     return lines
 
 
 def _place(place: Spot) -> str:
-    board = "" if place.x_mm is None else f" at {place.x_mm:g}, {place.y_mm:g} mm {'bottom' if place.layer == 'B.Cu' else 'top'}"
+    board = (
+        ""
+        if place.x_mm is None
+        else f" at {place.x_mm:g}, {place.y_mm:g} mm {'bottom' if place.layer == 'B.Cu' else 'top'}"
+    )
     return f"{safe(place.part)}{board}  ({safe(place.file)}:{place.line}:{place.column})"
 
 
 def _closing(report: Report) -> str:
     counts = Counter(summary(report))
-    passed = f"{counts['pass']} passed" + (f", {counts['screening_pass']} of them by screening" if counts["screening_pass"] else "")
-    levels = [counted(counts[level], level) for level in ("error", "warning", "note") if counts[level] or level != "note"]
+    passed = f"{counts['pass']} passed" + (
+        f", {counts['screening_pass']} of them by screening" if counts["screening_pass"] else ""
+    )
+    levels = [
+        counted(counts[level], level) for level in ("error", "warning", "note") if counts[level] or level != "note"
+    ]
     return "  ".join([*levels, f"{counts['undecided']} undecided", passed])
 
 
@@ -168,7 +192,9 @@ def _rendered(lines: Iterable[_Line], *, color: bool) -> str:
     from rich.text import Text  # noqa: PLC0415 (the same)
 
     target = StringIO()
-    console = Console(file=target, force_terminal=True, color_system="standard", markup=False, highlight=False, emoji=False)
+    console = Console(
+        file=target, force_terminal=True, color_system="standard", markup=False, highlight=False, emoji=False
+    )
     for line in lines:
         console.print(Text.assemble(*line), soft_wrap=True)
     return target.getvalue()

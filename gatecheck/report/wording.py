@@ -8,18 +8,18 @@ from typing import TYPE_CHECKING
 from gatecheck.finding import Level, Verdict
 
 if TYPE_CHECKING:
-    from gatecheck.finding import Report
+    from gatecheck.report_model import Report
 
 CAUTIONS = (
     "Estimates for a design review, no proof that a circuit is safe, compliant or fit for use.",
-    "Gate drives sit beside lethal voltages and stored energy: discharge and measure before touching, and follow "
-    "local codes and licensed practice.",
-    "A passed check cannot exclude that a stage is destroyed: verify at low bus voltage with a current limit, both edges.",
-    "Not checked: insulation, creepage, fusing, thermal design, short-circuit protection, functional safety, EMC.",
+    "Gate drives sit beside lethal voltages and stored energy: discharge and measure before touching.",
+    "Follow local codes and licensed practice.",
+    "A passed check cannot exclude that a stage is destroyed: verify both edges at low, current-limited bus voltage.",
+    "Not checked: insulation, creepage, fusing, heat, short-circuit protection, functional safety, EMC.",
 )
 SHORT_CAUTION = (
-    "Estimates, no proof of safety: gate drives sit beside lethal voltages. Verify at low bus voltage; follow local codes "
-    "and licensed practice."
+    "Estimates, no proof of safety: gate drives sit beside lethal voltages. Verify at low bus voltage; "
+    "follow local codes and licensed practice."
 )
 
 # Control characters, and those that reorder text on a terminal, come from hostile names only.

@@ -54,7 +54,8 @@ def candidates(
         if quantity.count > 1:
             candidate = _repeated(candidate, words=scan.words, kind=kind)
         operator = None if last_end is None else _OPERATORS.get(scan.text[last_end : quantity.start].strip())
-        if operator is None:
+        is_odd_sum = operator == "sum" and candidate.stated != found[-1].stated  # "100nF +20"
+        if operator is None or is_odd_sum:
             found.append(candidate)
         else:
             found[-1] = _joined(found[-1], candidate, operator=operator, kind=kind)
@@ -70,6 +71,8 @@ def chosen(found: list[Candidate]) -> Candidate | None:
     if not found:
         return None
     pool = [candidate for candidate in found if candidate.stated] or found
+    # Beside farads or henries a prefix alone is something else: "10uH 20m", "470uF ESR 30m".
+    pool = [candidate for candidate in pool if candidate.quantity.unit in {"F", "H"}] or pool
     first = pool[0]
     rivals = [candidate for candidate in pool[1:] if candidate.readings != first.readings]
     if not rivals:
@@ -107,14 +110,12 @@ def _joined(first: Candidate, second: Candidate, *, operator: str, kind: Kind) -
 
 
 def _range(first: Candidate, second: Candidate, *, kind: Kind) -> Candidate:
-    flags = (
-        (first.flags | second.flags | {"range"}) if first.stated == second.stated else frozenset({"range"})
-    )
+    flags = (first.flags | second.flags | {"range"}) if first.stated == second.stated else frozenset({"range"})
     lower = first.readings
     if second.stated and not first.stated:
         # "1-10k": the prefix counts for both ends; ohm may also be meant as written, farad and henry may not.
         lower = (scaled(first.quantity.digits, exponent=second.quantity.exponent),)
-        if kind in {Kind.RESISTOR, Kind.THERMISTOR, Kind.BEAD} and second.quantity.exponent:
+        if kind in {Kind.RESISTOR, Kind.THERMISTOR, Kind.BEAD} and lower != first.readings:
             lower += first.readings
             flags |= _AMBIGUOUS
     return Candidate(second.quantity, lower + second.readings, None, second.stated or first.stated, flags)

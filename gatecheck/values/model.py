@@ -37,9 +37,10 @@ FLAGS = MappingProxyType(
         "jumper": "a short circuit in place of the part; the amount is 0 ohm",
         "kind-mismatch": "the text describes another kind of part than the one asked for",
         "optional": "bracketed or starred: often, but not surely, a part that is not always fitted",
-        "placeholder": "no value, part number or rating: a library name, a question mark, nothing",
+        "placeholder": "no value, part number or rating: a library name, a size, a question mark, nothing",
         "range": "the text states a range itself",
         "standoff": "the voltage of a suppressor is its stand-off voltage; it clamps well above it",
+        "unread": "there are numbers in the text, but none is a value or rating of this kind of part",
         "unresolved": "holds a text variable that was not replaced",
     }
 )
@@ -52,7 +53,7 @@ class Amount:
 
     ``low == nominal == high`` when the text is exact and has one reading. Bounds come from readings and
     written ranges only, never from the tolerance of the part. ``nominal`` is the favoured reading or, where
-    none is favoured, the geometric mean of the bounds.
+    none is favoured, the geometric mean of the bounds (the arithmetic one from zero).
     """
 
     low: float
@@ -69,7 +70,8 @@ class Amount:
         """Return the amount over several readings, at least one, in SI units."""
         known = sorted(readings)
         low, high = known[0], known[-1]
-        nominal = math.sqrt(low) * math.sqrt(high) if favoured is None else favoured
+        middle = math.sqrt(low) * math.sqrt(high) if low > 0.0 else (low + high) / 2
+        nominal = middle if favoured is None else favoured
         return cls(low, min(max(nominal, low), high), high)
 
 
@@ -80,9 +82,9 @@ class Value:
     Attributes:
         raw: The text as it was given.
         kind: The kind of part the text describes: the kind asked for unless the text says otherwise.
-        amount: The value proper: ohm for resistors, thermistors and beads (the impedance magnitude), henry for
-            inductors, farad for capacitors, volt for diodes (Zener or stand-off voltage); for chokes ohm where
-            ``frequency_hz`` is set, else henry. None when the text has none.
+        amount: The value proper: ohm for resistors, thermistors and beads (the impedance magnitude), henry
+            for inductors, farad for capacitors, volt for diodes (Zener or stand-off voltage); for chokes ohm
+            where ``frequency_hz`` is set, else henry. None when the text has none.
         frequency_hz: For beads and chokes, the frequency of the impedance.
         current_a: Rated current.
         peak_current_a: Current labelled as peak, pulse or surge.

@@ -26,19 +26,21 @@ TOLERANCES = MappingProxyType(
 )
 """Fraction for each tolerance letter, IEC 60062 (from memory); for the asymmetric Z the larger side."""
 
-_E24 = "10 11 12 13 15 16 18 20 22 24 27 30 33 36 39 43 47 51 56 62 68 75 82 91".split()
-_E96 = [round(100 * 10 ** (step / 96)) for step in range(96)]  # IEC 60063: by formula from E48 on
+# IEC 60063. E12 and E24 are a table of their own; from E48 on the numbers follow the formula.
+_E12 = ("10", "12", "15", "18", "22", "27", "33", "39", "47", "56", "68", "82")
+_BETWEEN_E12 = ("11", "13", "16", "20", "24", "30", "36", "43", "51", "62", "75", "91")
+_E96 = [round(100 * 10 ** (step / 96)) for step in range(96)]
 _CODE_LENGTHS = {3, 4}  # IEC 60062: two or three significant digits and a power of ten
 _SMALL_POWERS = {"8": -2, "9": -1}  # IEC 60062 (from memory): 8 and 9 stand for 0.01 and 0.1
 
 
 def significant_digits(number: str) -> str:
-    """Return the significant digits of a decimal number, at least two: "0.0470" gives "47", "5" gives "50"."""
+    """Return the significant digits of a decimal number, at least two: "0.047" gives "47", "5" gives "50"."""
     return number.replace(".", "").lstrip("0").rstrip("0").ljust(2, "0")
 
 
-E12 = frozenset(_E24[::2])
-E24 = frozenset(_E24)
+E12 = frozenset(_E12)
+E24 = E12 | frozenset(_BETWEEN_E12)
 E24_AND_E96 = E24 | frozenset(significant_digits(str(number)) for number in _E96)
 
 
@@ -64,17 +66,18 @@ def digit_code(digits: str, *, exponent: int = 0) -> float | None:
 
 
 def scaled(number: str, *, exponent: int) -> float:
-    """Return a decimal number times a power of ten, rounded once ("4.7" and -6 give the float nearest 4.7e-6)."""
+    """Return a decimal number times a power of ten, rounded once: "4.7" and -6 give the float 4.7e-6."""
     return float(f"{number}e{exponent}")
 
 
 def decimal_readings(written: str) -> tuple[str, ...]:
     """Return the decimal numbers that digits with points and commas can mean, at least one.
 
-    "4,7" is 4.7; "1.000,0" and "1,000.5" show which mark groups; "1,000" may be 1 or 1000.
+    "4,7" is 4.7; "10 000" is grouped; "1.000,0" and "1,000.5" show which mark groups; "1,000" may be 1 or
+    1000.
     """
     if "," not in written:
-        return (written,)
+        return (written.replace(" ", ""),)
     if "." in written:
         if written.rindex(",") > written.rindex("."):
             return (written.replace(".", "").replace(",", "."),)

@@ -12,17 +12,15 @@ from dataclasses import dataclass
 from .model import Kind
 from .numeral import digit_code
 from .scanner import Scan, Word
-from .vocabulary import METRIC_SIZES, SIZES
+from .vocabulary import METRIC_SIZES, SIZES, ZENER_NAME
 
 # Two digits that stand for a chip size in inductor and bead codes: tenths of a millimetre of its length.
 _SHORT_SIZES = {"03": "0201", "10": "0402", "15": "0402", "18": "0603", "21": "0805", "31": "1206"}
 _LONGEST_BEAD_CODE_OHM = 1e4  # as for the values: no bead has more; our choice
 _BEAD = re.compile(r"[A-Z]{2,5}(?P<size>\d{4}|\d{2})[A-Z]{1,3}(?P<code>[1-9]\d{2})(?:[A-Z-]|$)")
 _SUPPRESSOR = re.compile(r"[A-Z]{3}J(?P<volt>\d{1,3}(?:\.\d)?)(?P<direction>CA|C|A)?")
-_ZENER = re.compile(r"[A-Z0-9-]*[A-Z-](?P<whole>\d{1,2})V(?P<tenth>\d)")
-_SHORTEST_PASSIVE = (
-    6  # letters and digits; shorter runs in a passive's value are codes of dielectric and the like
-)
+_ZENER = re.compile(r"[A-Z]{2,4}\d{2}-?[ABC](?P<whole>\d{1,2})(?:V(?P<tenth>\d))?")
+_SHORTEST_PASSIVE = 6  # letters and digits; shorter runs in a passive's value are codes of dielectric and the like
 _SHORTEST_ACTIVE = 4
 
 
@@ -48,7 +46,8 @@ def part_number(scan: Scan, *, kind: Kind) -> str | None:
         if isinstance(token, Word) and len(token.text) >= shortest:
             digits = sum(character.isdecimal() for character in token.text)
             letters = sum(character.isalpha() for character in token.text)
-            if digits == len(token.text) or (digits >= 2 and letters >= 1):  # noqa: PLR2004 - "2N7002", not "4PIN"
+            is_code = digits == len(token.text) or (digits >= 2 and letters >= 1)  # noqa: PLR2004 - not "4PIN"
+            if is_code and not ZENER_NAME.fullmatch(token.text):
                 return token.text
     return None
 
@@ -80,5 +79,5 @@ def _diode_hint(code: str) -> Hint | None:
         flags = {"hint", "standoff", "bidirectional"} if is_both_ways else {"hint", "standoff"}
         return Hint(float(match["volt"]), None, frozenset(flags))
     if match := _ZENER.fullmatch(code):
-        return Hint(float(f"{match['whole']}.{match['tenth']}"), None, frozenset({"hint"}))
+        return Hint(float(f"{match['whole']}.{match['tenth'] or 0}"), None, frozenset({"hint"}))
     return None

@@ -2,7 +2,6 @@
 
 from __future__ import annotations
 
-import re
 from dataclasses import dataclass, replace
 from types import MappingProxyType
 from typing import TYPE_CHECKING
@@ -22,6 +21,7 @@ from .vocabulary import (
     RESISTANCE_LABELS,
     SUPPRESSOR_WORDS,
     THERMISTOR_WORDS,
+    ZENER_NAME,
     ZENER_WORDS,
 )
 
@@ -32,7 +32,6 @@ USUAL_BEAD_FREQUENCY_HZ = 100e6  # at which nearly all beads are specified; comm
 _LOWEST_BEAD_FREQUENCY_HZ = 1e6  # a lower one ("50Hz") is no bead's; our choice
 _LOWEST_BEAD_OHM = 2.0  # a bead with less at 100 MHz is not made, a DC resistance is below it; our choice
 _BEAD_TO_DC_RATIO = 10.0  # of two ohm values so far apart the smaller is the DC resistance; our choice
-_ZENER_NAME = re.compile(r"[Zz][Dd]?(?P<volt>\d{1,3}(?:\.\d{1,3})?|\d{1,2}[Vv]\d)[Vv]?")
 _BRIDGING_KINDS = frozenset({Kind.RESISTOR, Kind.THERMISTOR, Kind.BEAD, Kind.INDUCTOR, Kind.CHOKE})
 _READERS: MappingProxyType[Kind, Callable[[Quantity], Candidate | None]] = MappingProxyType(
     {Kind.RESISTOR: resistance, Kind.THERMISTOR: resistance, Kind.CAPACITOR: capacitance}
@@ -130,20 +129,24 @@ def _inductor(scan: Scan) -> Principal:
     rest = [quantity for quantity in scan.quantities if quantity not in labelled_dc]
     main = chosen(candidates(scan, rest, reader=inductance, kind=Kind.INDUCTOR))
     plain = [quantity for quantity in rest if quantity.unit == "ohm" and not quantity.letter]
+    if main is not None and main.quantity.unit == "H":
+        plain += [quantity for quantity in rest if quantity.prefix == "m" and not quantity.unit]
     dc = labelled_dc or (plain if main is not None else [])
     found = _principal(Kind.INDUCTOR, main)
     return replace(found, dc_resistance_ohm=dc[0].number) if dc else found
 
 
 def _bead(scan: Scan, *, kind: Kind) -> Principal:
-    """Read a bead or choke: of several ohm values the large one is the impedance, the small one DC resistance."""
+    """Read a bead or choke: of several ohm values the large one is the impedance, a small one DC."""
     labelled_dc = _labelled_resistances(scan)
     rest = [quantity for quantity in scan.quantities if quantity not in labelled_dc]
     found = candidates(scan, rest, reader=impedance, kind=kind)
     largest = max((max(candidate.readings) for candidate in found if candidate.stated), default=0.0)
     limit = max(_LOWEST_BEAD_OHM, largest / _BEAD_TO_DC_RATIO)
     windings = [
-        candidate for candidate in found if candidate.stated and 0.0 < max(candidate.readings) < limit
+        candidate
+        for candidate in found
+        if 0.0 < max(candidate.readings) < limit and (candidate.stated or len(found) == 1)
     ]
     main = chosen([candidate for candidate in found if candidate not in windings])
     dc = labelled_dc or [candidate.quantity for candidate in windings]
@@ -155,9 +158,7 @@ def _bead(scan: Scan, *, kind: Kind) -> Principal:
     if main is not None and frequency is None:
         flags |= {"assumed-frequency"}
         frequency = USUAL_BEAD_FREQUENCY_HZ
-    return replace(
-        principal, frequency_hz=frequency, dc_resistance_ohm=dc[0].number if dc else None, flags=flags
-    )
+    return replace(principal, frequency_hz=frequency, dc_resistance_ohm=dc[0].number if dc else None, flags=flags)
 
 
 def _labelled_resistances(scan: Scan) -> list[Quantity]:
@@ -165,7 +166,7 @@ def _labelled_resistances(scan: Scan) -> list[Quantity]:
 
 
 def _frequency_hz(scan: Scan, *, kind: Kind) -> float | None:
-    """Return the frequency that an impedance is stated at; without a unit it is MHz ("600@100", "600R/100M")."""
+    """Return the frequency of an impedance; without a unit it is in MHz ("600@100", "600R/100M")."""
     is_bead = kind in {Kind.BEAD, Kind.CHOKE}
     for quantity in scan.quantities:
         if quantity.unit == "Hz" and quantity.number >= _LOWEST_BEAD_FREQUENCY_HZ:
@@ -185,14 +186,20 @@ def _diode(scan: Scan) -> Principal:
     has_current = any(quantity.unit == "A" for quantity in scan.quantities)
     if scan.words & RECTIFIER_WORDS or (has_current and not scan.words & ZENER_WORDS):
         return Principal(Kind.DIODE)
-    flags = frozenset({"standoff"}) if scan.words & SUPPRESSOR_WORDS else frozenset[str]()
+    found = _principal(Kind.DIODE, chosen(candidates(scan, scan.quantities, reader=voltage, kind=Kind.DIODE)))
+    if found.amount is None:
+        found = replace(found, amount=_named_voltage(scan))
+    flags = found.flags
+    if scan.words & SUPPRESSOR_WORDS and found.amount is not None:
+        flags |= {"standoff"}
     if scan.words & BIDIRECTIONAL_WORDS:
         flags |= {"bidirectional"}
-    found = _principal(Kind.DIODE, chosen(candidates(scan, scan.quantities, reader=voltage, kind=Kind.DIODE)))
-    if found.amount is not None:
-        return replace(found, flags=found.flags | flags)
-    for token in scan.tokens:
-        if isinstance(token, Word) and (match := _ZENER_NAME.fullmatch(token.text)):
-            volt = float(match["volt"].upper().replace("V", "."))
-            return Principal(Kind.DIODE, Amount.exactly(volt), flags=flags)
     return replace(found, flags=flags)
+
+
+def _named_voltage(scan: Scan) -> Amount | None:
+    """Return the voltage in the name of a Zener diode ("Z16", "ZD5V1"), or None."""
+    for token in scan.tokens:
+        if isinstance(token, Word) and (match := ZENER_NAME.fullmatch(token.text)):
+            return Amount.exactly(float(match["volt"].upper().replace("V", ".")))
+    return None

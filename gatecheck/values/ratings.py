@@ -30,7 +30,7 @@ class Ratings:
 
 
 def ratings(scan: Scan) -> Ratings:
-    """Return the first rating of each sort in a text; what stands behind an "@" is a condition, not a rating."""
+    """Return the first rating of each sort in a text; what stands behind an "@" is a condition, no rating."""
     peaks = labelled(scan, labels=PEAK_LABELS)
     saturations = labelled(scan, labels=SATURATION_LABELS)
     firsts: dict[str, float] = {}
@@ -60,8 +60,9 @@ def tolerance(scan: Scan, *, quantity: Quantity | None, kind: Kind) -> float | N
         return max(percentages) / 100
     if quantity is None:
         return None
-    if quantity.tolerance:
-        return TOLERANCES[quantity.tolerance]
+    if quantity.tolerance is not None:
+        is_of_capacitors = quantity.tolerance == TOLERANCES["Z"]  # "600Z" on a bead is no tolerance
+        return None if is_of_capacitors and kind is not Kind.CAPACITOR else quantity.tolerance
     if kind in _OHMIC_KINDS and ends_in_tolerance_f(quantity):
         return TOLERANCES["F"]
     if kind in _CODE_LETTER_KINDS and not quantity.unit and quantity.prefix in {"k", "M"}:
@@ -78,13 +79,11 @@ def _letter_behind(scan: Scan, quantity: Quantity) -> float | None:
 
 
 def labelled(scan: Scan, *, labels: AbstractSet[str]) -> tuple[Quantity, ...]:
-    """Return the quantities that a label word stands at: the one right behind it, else the one right before."""
+    """Return the quantities that a label word stands at: one right behind it, else one right before it."""
     if not scan.words & labels:
         return ()
     found: list[Quantity] = []
-    tokens = [
-        token for token in scan.tokens if not (isinstance(token, Word) and token.text.lower() in _FILLERS)
-    ]
+    tokens = [token for token in scan.tokens if not (isinstance(token, Word) and token.text.lower() in _FILLERS)]
     for place, token in enumerate(tokens):
         if isinstance(token, Word) and token.text.lower() in labels:
             behind, before = tokens[place + 1 : place + 2], tokens[max(place - 1, 0) : place]

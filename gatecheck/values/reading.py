@@ -51,9 +51,7 @@ class Candidate:
         return Amount.spanning(self.readings, favoured=self.favoured)
 
 
-def _candidate(
-    quantity: Quantity, *, stated: bool = True, flags: frozenset[str] = _NONE, shift: int = 0
-) -> Candidate:
+def _candidate(quantity: Quantity, *, stated: bool = True, flags: frozenset[str] = _NONE, shift: int = 0) -> Candidate:
     """Return the quantity as it stands, in the unit of ten to the power of ``shift``."""
     readings = quantity.readings(shift=shift)
     if len(readings) > 1:
@@ -77,12 +75,12 @@ def resistance(quantity: Quantity) -> Candidate | None:
 
 
 def ends_in_tolerance_f(quantity: Quantity) -> bool:
-    """Tell whether the F of a resistance ("10F", "10kF") is the tolerance letter: a resistor has no farads."""
+    """Tell whether an F is the tolerance letter of a resistance ("10F", "10kF")."""
     return quantity.unit == "F" and quantity.prefix in {"", "k", "M"}
 
 
 def _with_letter_e(quantity: Quantity) -> Candidate:
-    """Read "4E7": the letter as decimal point (4.7 ohm, as R in IEC 60062; common practice) or as exponent."""
+    """Read "4E7": the letter as decimal point (as R in IEC 60062; common practice) or as exponent."""
     whole, _, part = quantity.digits.partition(".")
     as_letter = quantity.number
     as_exponent = scaled(whole, exponent=int(part)) if len(part) == 1 else as_letter
@@ -130,7 +128,10 @@ def impedance(quantity: Quantity) -> Candidate | None:
 
 
 def capacitance(quantity: Quantity) -> Candidate | None:
-    """Read a quantity as the value of a capacitor, farad; bare numbers are pF, below one uF (common practice)."""
+    """Read a quantity as the value of a capacitor, farad.
+
+    Three bare digits may be a code of pF (IEC 60062); bare numbers are pF, below one uF (common practice).
+    """
     if quantity.unit or quantity.at:
         return _farads(quantity) if quantity.unit == "F" and not quantity.at else None
     if quantity.prefix in _SMALL_PREFIXES:
@@ -170,6 +171,10 @@ def inductance(quantity: Quantity) -> Candidate | None:
         return _candidate(quantity)
     if quantity.letter in {"R", "r"}:
         return _candidate(quantity, flags=_CODE, shift=_MICRO)
+    return _digits_of_inductance(quantity)
+
+
+def _digits_of_inductance(quantity: Quantity) -> Candidate | None:
     as_code = _code(quantity, unit_exponent=_MICRO)
     if as_code is not None and _ends_in_tolerance(quantity):
         return Candidate(quantity, (as_code,), as_code, stated=True, flags=_CODE)
@@ -217,9 +222,7 @@ def _ends_in_tolerance(quantity: Quantity) -> bool:
     return is_code and bool(quantity.tolerance or quantity.prefix in _TOLERANCE_LIKE_PREFIXES)
 
 
-def _code_or_number(
-    quantity: Quantity, *, as_code: float, unit_exponent: int, flags: frozenset[str]
-) -> Candidate:
+def _code_or_number(quantity: Quantity, *, as_code: float, unit_exponent: int, flags: frozenset[str]) -> Candidate:
     """Read three bare digits as a code, unless they end in zero.
 
     There the number itself is the likelier reading; the code stays in the interval where its two digits are

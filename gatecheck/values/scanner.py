@@ -12,21 +12,22 @@ import re
 import unicodedata
 from dataclasses import dataclass
 
-from .numeral import EXPONENTS, decimal_readings, scaled, significant_digits
+from .numeral import EXPONENTS, TOLERANCES, decimal_readings, scaled, significant_digits
 from .vocabulary import METRIC_SIZES, NAMED_OUTLINE, SIZES
 
 MAX_LENGTH = 400  # characters that are parsed; our choice, far above any value text and most descriptions
 
-# After compatibility normalisation (NFKC) these are left. Powers and fractions become digits there, the
-# micro sign a mu, the ohm sign an omega, the square kilo-ohm sign two letters, the ellipsis three points.
+# After compatibility normalisation (NFKC) these are left. There the micro sign becomes a mu, the ohm sign an
+# omega, the square kilo-ohm sign two letters, the ellipsis three points, a wide digit a digit.
+_SPACED = str.maketrans({"\u00bc": " 1/4", "\u00bd": " 1/2", "\u215b": " 1/8"})  # else they stick to a digit
 _REPLACED = str.maketrans(
-    {"\u03bc": "u", "\u00d7": "x", "\u2044": "/", "\u00b1": " ", "\u2225": "||"}
-    | dict.fromkeys("\u2010\u2011\u2012\u2013\u2014\u2015\u2212", "-")
+    {"\u03bc": "u", "\u00d7": "x", "\u2225": "||"} | dict.fromkeys("\u2010\u2011\u2012\u2013\u2014\u2015\u2212", "-")
 )
 
 _NUMBER = r"""
     \d{1,3}(?:\.\d{3})+,\d{1,9}             # 1.000,0
   | \d{1,3}(?:,\d{3})+(?:\.\d{1,9})?(?!\d)  # 1,000 and 1,000.5
+  | \d{1,3}(?:\ 000)+(?!\d)                 # 10 000
   | \d{1,15}(?:\.|,(?!0\d{3}(?!\d)))\d{1,15}  # 4.7 and 4,7, but not the comma in 10,0603
   | \d{1,15}
   | (?<!\.)\.\d{1,15}
@@ -36,7 +37,10 @@ _QUALIFIER = r"(?i:dc|ac|rms|pk|max|dss?|gs|amps?|mps?|olts?|atts?|arads?|enry|d
 
 _TOKEN = re.compile(
     rf"""
-    (?P<variable>\$?\{{[^{{}}]*\}})
+    (?P<variable>(?<!~)\$?\{{[^{{}}]*\}})
+  | (?P<deviation>(?:\u00b1|\+/?-)\s?\d{{1,4}}(?:[.,]\d{{1,4}})?\s?
+        [pnumkM]?(?:[Oo]hm|[\u03a9RFHVA])(?![A-Za-z0-9]))
+  | (?P<asymmetric>\+(?P<above>\d{{1,3}})\s?%?\s?/?\s?-(?P<below>\d{{1,3}})\s?%)
   | (?P<aside>(?<![A-Za-z0-9])(?:
         \d{{1,5}}\s?ppm(?:/[KC])?
       | AEC-?\ ?Q\d{{3}}
@@ -56,18 +60,19 @@ _TOKEN = re.compile(
             (?P<part>\d{{1,4}})
             (?:\s?(?P<coded_ohm>[Oo][Hh][Mm][Ss]?|\u03a9)|(?P<coded_unit>[FfHhRr]))?
             (?P<coded_tolerance>[BCDFGJKMN])?
-            (?:\s?[xX*]\s?(?P<coded_after>[1-9]\d?)(?!\.))?
-            (?![A-Za-z0-9\u03a9]|\.\d)
+            (?:\s?[x*]\s?(?P<coded_after>[1-9]\d?)(?!\.))?
+            (?![A-Za-z0-9%\u03a9]|\.\d)
         )
       | (?P<plain>
-            (?:(?P<count>[1-9]\d?)\s?[xX*]\s?)?
+            (?:(?P<count>[1-9]\d?)\s?[xX*]\s?(?!0\d{{3}}))?
             (?P<number>{_NUMBER})(?P<exponent>[eE][-+]?\d{{1,2}})?
             (?:\s{{0,2}}
                (?P<prefix>[Mm][Ee][Gg][Aa]?|milli|micro|kilo|[pPnNuUmkKMG])?\s?
                (?:(?P<unit>{_UNIT})(?P<qualifier>{_QUALIFIER})?)?
             )?
-            (?P<tolerance>[BCDFGJKMNZ])?
-            (?:\s?[xX*]\s?(?P<after>[1-9]\d?)(?!\.))?
+            (?:(?<!\s)(?P<tolerance>[BCDFGJKMNZ]))?
+            (?:(?<=[A-Za-z\u03a9])(?P<percent>\d{{1,2}}(?:\.\d)?)%)?
+            (?:\s?[x*]\s?(?P<after>[1-9]\d?)(?!\.))?
             (?![A-Za-z0-9\u03a9]|\.\d)
         )
     )
@@ -104,7 +109,7 @@ class Quantity:
         letter: The IEC 60062 letter in place of the decimal point, as written, or "".
         leads: Whether that letter stands in front of all digits ("R47").
         label: What is glued to the unit, lower case: "pk", "dc", "ds".
-        tolerance: Tolerance letter, or "".
+        tolerance: The tolerance glued to it as a fraction, from a letter or percentage, or None.
         count: The 2 of "2x10R".
         at: True behind an "@".
         start: Place of the first character in the scanned text.
@@ -118,7 +123,7 @@ class Quantity:
     letter: str
     leads: bool
     label: str
-    tolerance: str
+    tolerance: float | None
     count: int
     at: bool
     start: int
@@ -178,7 +183,7 @@ def normalised(text: str) -> str:
     """Return the text as it is scanned: cut, one character for each sign, no underscores."""
     clean = text[:MAX_LENGTH]
     if not clean.isascii():
-        clean = unicodedata.normalize("NFKC", clean).translate(_REPLACED)[:MAX_LENGTH]
+        clean = unicodedata.normalize("NFKC", clean.translate(_SPACED)).translate(_REPLACED)[:MAX_LENGTH]
     if "{" in clean:
         clean = clean.replace("{slash}", "/")  # KiCad's escape for a stroke
     return clean.replace("_", " ")
@@ -204,11 +209,15 @@ def scanned(text: str) -> Scan:
             case "outline":
                 package = package or match["outline"]
             case "fraction":
-                tokens.append(_fraction(match))
+                power_w = int(match["upper"]) / int(match["lower"])
+                tokens.append(_single(match, number=f"{power_w:.9f}", unit="W"))
+            case "asymmetric":
+                percentage = max(match["above"], match["below"], key=int)
+                tokens.append(_single(match, number=percentage, unit="%"))
             case "variable":
                 unresolved = True
             case _:
-                pass  # an aside: temperature coefficient, case dimensions, qualification
+                pass  # temperature, temperature coefficient, dimensions of a case, deviation in its unit
     quantities = tuple([token for token in tokens if isinstance(token, Quantity)])
     return Scan(
         text=text,
@@ -239,7 +248,7 @@ def _plain(match: re.Match[str]) -> Quantity | Word:
         letter="",
         leads=False,
         label=(match["qualifier"] or "").lower(),
-        tolerance=match["tolerance"] or "",
+        tolerance=_tolerance(match["tolerance"], percent=match["percent"]),
         count=int(match["count"] or match["after"] or 1),
         at=match[0].startswith("@"),
         start=match.start(),
@@ -257,10 +266,10 @@ def _coded(match: re.Match[str]) -> Quantity:
         unit = letter.upper()
     else:
         prefix = _PREFIXES.get(letter, letter)
-    tolerance = match["coded_tolerance"] or ""
+    letter_behind = match["coded_tolerance"]
     written = match["coded_unit"] or match["coded_ohm"]
     if written in {"F", "f"} and (unit or prefix in "kMG"):
-        tolerance = "F"  # "4R7F" and "4k7F" are resistors of one percent, not farads
+        letter_behind = "F"  # "4R7F" and "4k7F" are resistors of one percent, not farads
     elif written:
         unit = _UNITS[written.lower()]
     return Quantity(
@@ -271,7 +280,7 @@ def _coded(match: re.Match[str]) -> Quantity:
         letter=letter,
         leads=match["lead"] is not None,
         label="",
-        tolerance=tolerance,
+        tolerance=_tolerance(letter_behind),
         count=int(match["coded_count"] or match["coded_after"] or 1),
         at=match[0].startswith("@"),
         start=match.start(),
@@ -279,16 +288,22 @@ def _coded(match: re.Match[str]) -> Quantity:
     )
 
 
-def _fraction(match: re.Match[str]) -> Quantity:
+def _tolerance(letter: str | None, *, percent: str | None = None) -> float | None:
+    if percent:
+        return float(percent) / 100
+    return TOLERANCES[letter] if letter else None
+
+
+def _single(match: re.Match[str], *, number: str, unit: str) -> Quantity:
     return Quantity(
-        numbers=(f"{int(match['upper']) / int(match['lower']):.9f}",),
+        numbers=(number,),
         exponent=0,
         prefix="",
-        unit="W",
+        unit=unit,
         letter="",
         leads=False,
         label="",
-        tolerance="",
+        tolerance=None,
         count=1,
         at=False,
         start=match.start(),

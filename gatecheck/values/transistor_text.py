@@ -4,20 +4,22 @@ from __future__ import annotations
 
 import re
 from dataclasses import dataclass
+from itertools import takewhile
 from typing import TYPE_CHECKING, Literal
 
 from .model import TransistorText
 from .scanner import Quantity, Word, normalised, scanned
 
 if TYPE_CHECKING:
-    from collections.abc import Iterable, Iterator
+    from collections.abc import Iterator
 
     from .scanner import Scan
 
 # A comma between two digits may divide or group; any other ends a statement.
 _STATEMENT_END = re.compile(r";|,(?!\d)|(?<![0-9]),")
-_CHANNEL = re.compile(
-    r"(?i)(?<![a-z0-9])(?P<channel>[np])[- ]?(?:channel|chan|ch|mosfet|mos|fet|type)(?![a-z])"
+_CHANNEL = re.compile(r"(?i)(?<![a-z0-9])(?P<channel>[np])[- ]?(?:channel|chan|ch|mosfet|mos|fet|type)(?![a-z])")
+_BOTH_CHANNELS = re.compile(
+    r"(?i)(?<![a-z0-9])(?:n[- ]{0,2}(?:and|[/&+])[- ]?p|p[- ]{0,2}(?:and|[/&+])[- ]?n|complementary)(?![a-z])"
 )
 # A silicon carbide diode beside an IGBT does not make it a silicon carbide switch.
 _CARBIDE_DIODE = re.compile(r"(?i)(?:sic|silicon carbide)[- ](?:schottky|diode|sbd)")
@@ -35,9 +37,7 @@ _RATED = {
     "ohm": frozenset({"ron", "rds", "rdson"}),
 }
 _NOT_RATED = {
-    "A": frozenset(
-        {"idm", "icm", "idpulse", "icpulse", "pulse", "pulsed", "peak", "igss", "is", "if", "ias"}
-    ),
+    "A": frozenset({"idm", "icm", "idpulse", "icpulse", "pulse", "pulsed", "peak", "igss", "is", "if", "ias"}),
     "V": frozenset({"vgs", "vge", "vgss", "vges", "vth", "vgsth", "th", "vf", "vsd", "sat", "gate", "drive"}),
     "ohm": frozenset({"rg", "rgint", "rth"}),
 }
@@ -70,9 +70,7 @@ def parse_transistor_text(text: str) -> TransistorText:
         What the text says. Never raises.
     """
     clean = normalised(text)
-    statements = [
-        statement for part in _STATEMENT_END.split(clean) for statement in _statements(scanned(part))
-    ]
+    statements = [statement for part in _STATEMENT_END.split(clean) for statement in _statements(scanned(part))]
     charge_c, charge_kind = _gate_charge(statements)
     return TransistorText(
         channel=_channel(clean),
@@ -87,24 +85,25 @@ def parse_transistor_text(text: str) -> TransistorText:
 
 def _statements(scan: Scan) -> Iterator[_Statement]:
     """Yield the quantities that are ratings: neither a test condition behind an "@" nor an end of a range."""
-    places = [place for place, token in enumerate(scan.tokens) if isinstance(token, Quantity)]
-    last_end = 0
-    for place, last, following in zip(places, [-1, *places], [*places[1:], len(scan.tokens)], strict=False):
-        quantity = scan.tokens[place]
-        gap = scan.text[last_end : quantity.start].strip()
-        last_end = quantity.end
-        if quantity.at or "@" in gap or (last >= 0 and gap in _CONNECTORS):
+    before: list[str] = []
+    last: Quantity | None = None
+    for place, token in enumerate(scan.tokens):
+        if isinstance(token, Word):
+            before.insert(0, token.text.lower())
             continue
-        before, behind = scan.tokens[last + 1 : place], scan.tokens[place + 1 : following]
-        yield _Statement(quantity, _lowered(reversed(before)), _lowered(behind))
+        gap = scan.text[last.end if last else 0 : token.start].strip()
+        if not (token.at or "@" in gap or (last is not None and gap in _CONNECTORS)):
+            yield _Statement(token, tuple(before), _words_behind(scan, place))
+        before, last = [], token
 
 
-def _lowered(words: Iterable[Quantity | Word]) -> tuple[str, ...]:
-    return tuple([word.text.lower() for word in words if isinstance(word, Word)])
+def _words_behind(scan: Scan, place: int) -> tuple[str, ...]:
+    following = takewhile(lambda token: isinstance(token, Word), scan.tokens[place + 1 :])
+    return tuple([token.text.lower() for token in following if isinstance(token, Word)])
 
 
 def _rated(statements: list[_Statement], *, unit: str) -> float | None:
-    """Return the rating of a unit in SI: one with the right label before one without, the first before others."""
+    """Return the rating of a unit in SI: one with the right label before one without, the first of more."""
     rated, not_rated = _RATED[unit], _NOT_RATED[unit]
     unlabelled: float | None = None
     for statement in statements:
@@ -140,6 +139,8 @@ def _gate_charge(
 
 
 def _channel(text: str) -> Literal["n", "p"] | None:
+    if _BOTH_CHANNELS.search(text):
+        return None
     channels = {match["channel"].lower() for match in _CHANNEL.finditer(text)}
     if channels == {"n"}:
         return "n"

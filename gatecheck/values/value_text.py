@@ -8,7 +8,7 @@ from .model import Amount, Kind, Value
 from .part_number import hint, part_number
 from .principal import USUAL_BEAD_FREQUENCY_HZ, Principal, principal
 from .ratings import Ratings, ratings, tolerance
-from .scanner import MAX_LENGTH, normalised, scanned
+from .scanner import MAX_LENGTH, Scan, normalised, scanned
 from .vocabulary import NOT_FITTED
 
 _BRACKETS = frozenset({"()", "[]", "<>"})
@@ -17,8 +17,8 @@ _BRACKETS = frozenset({"()", "[]", "<>"})
 def parse_value(text: str, *, kind: Kind) -> Value:
     """Read the value of a part.
 
-    Letter codes and tolerance letters follow IEC 60062, preferred numbers IEC 60063. Where engineers' habits go
-    beyond them the reading is common practice, and a flag tells when it may be wrong.
+    Letter codes and tolerance letters follow IEC 60062, preferred numbers IEC 60063. Where engineers' habits
+    go beyond them the reading is common practice, and a flag tells when it may be wrong.
 
     Args:
         text: The value field, or value and comment with a separator between; any string.
@@ -40,10 +40,10 @@ def parse_value(text: str, *, kind: Kind) -> Value:
         flags.add("unresolved")
     if found.kind is not kind:
         flags.add("kind-mismatch")
-    if _is_optional(clean):
+    if fitted and _is_optional(clean):
         flags.add("optional")
     if fitted and number is None and not scan.unresolved and _is_silent(found, rated=rated):
-        flags.add("placeholder")
+        flags.add("unread" if _has_numbers(scan) else "placeholder")
     is_clamp = found.kind is Kind.DIODE and found.amount is not None
     return Value(
         raw=text,
@@ -71,13 +71,16 @@ def _placement(clean: str, *, kind: Kind) -> tuple[bool, str]:
     if match is None:
         return True, clean
     rest = f"{clean[: match.start()]} {clean[match.end() :]}"
-    # "10u 25V NP" is a capacitor without polarity.
-    is_unpolarised = kind is Kind.CAPACITOR and match[0] == "NP" and any(map(str.isdecimal, rest))
-    return is_unpolarised, rest
+    if kind is Kind.CAPACITOR and any(map(str.isdecimal, rest)):
+        if match[0] == "NP":  # "10u 25V NP" has no polarity
+            return True, rest
+        if match[0] in {"NF", "nf"} and clean[: match.start()].rstrip()[-1:].isdecimal():  # "100 NF"
+            return True, clean
+    return False, rest
 
 
 def _with_hint(found: Principal, *, number: str | None) -> tuple[Principal, str | None]:
-    """Return the value, filled from the pattern of the part number if need be, and the package of that pattern."""
+    """Return the value, filled from a part number's pattern if need be, and the package of that pattern."""
     guess = hint(number, kind=found.kind) if number is not None and found.amount is None else None
     if guess is None:
         return found, None
@@ -94,6 +97,11 @@ def _with_hint(found: Principal, *, number: str | None) -> tuple[Principal, str 
 def _is_optional(clean: str) -> bool:
     stripped = clean.strip()
     return stripped[:1] + stripped[-1:] in _BRACKETS or (stripped.endswith("*") and len(stripped) > 1)
+
+
+def _has_numbers(scan: Scan) -> bool:
+    in_words = any(character.isdecimal() for word in scan.words for character in word)
+    return in_words or any(quantity.unit != "%" for quantity in scan.quantities)
 
 
 def _is_silent(found: Principal, *, rated: Ratings) -> bool:

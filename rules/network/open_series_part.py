@@ -25,10 +25,11 @@ def _check(design: Design) -> Iterator[Say]:
 
 def _open(gate: Gate, blocked: list[str]) -> Say:
     edge = blocked[0] if len(blocked) == 1 else None
+    what = f"the {edge} edge" if edge else "the gate"
     return Say(
         gate,
         Verdict.FAIL,
-        f"a series part is marked as not fitted, so nothing drives the {edge or 'gate'}{' edge' if edge else ''}",
+        f"a series part is marked as not fitted, so nothing drives {what}",
         level=Level.ERROR,
         rests_on=Origin.GEOMETRY,
         parts=gate.open_parts,
@@ -41,8 +42,8 @@ RULE = Rule(
     id="open-series-part",
     title="no unfitted part interrupts the way between driver and gate",
     reason=(
-        "A series part that is not fitted is an open circuit. The gate is then held by nothing but its pull-down, if it has "
-        "one, and the switch neither turns on nor stays reliably off."
+        "A series part that is not fitted is an open circuit. The gate is then held by nothing but its pull-down, "
+        "if it has one, and the switch neither turns on nor stays reliably off."
     ),
     quantity="conducting ways of each edge",
     limits=("at least one way of fitted parts for each edge",),

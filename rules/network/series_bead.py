@@ -22,7 +22,13 @@ def _check(design: Design) -> Iterator[Say]:
         for gate in network:
             covered = _covered(gate)
             if covered == list(EDGES):
-                yield Say(gate, Verdict.PASS, "a bead in its own branch, on both edges", rests_on=Origin.VALUE, parts=gate.beads)
+                yield Say(
+                    gate,
+                    Verdict.PASS,
+                    "a bead in its own branch, on both edges",
+                    rests_on=Origin.VALUE,
+                    parts=gate.beads,
+                )
             elif covered:
                 bare = next(edge for edge in EDGES if edge not in covered)
                 yield _one_edge(gate, bare)
@@ -79,9 +85,10 @@ RULE = Rule(
     id="series-bead",
     title="a bead in series with the gate resistor where one is needed",
     reason=(
-        "A gate and the inductance around it form a resonant circuit of 50 to 300 MHz with the drain's. A resistor large "
-        "enough to damp it there would slow every edge; a bead is resistive there and nearly absent at the edge's own "
-        "frequencies. Paralleled gates also ring against each other, which only parts in each gate's own branch damp."
+        "A gate and the inductance around it form a resonant circuit, and with the drain's another one of 50 to "
+        "300 MHz. A resistor large enough to damp it there would slow every edge; a bead is resistive there and "
+        "nearly absent at the edge's own frequencies. Paralleled gates also ring against each other, which only "
+        "parts in each gate's own branch damp."
     ),
     quantity="parts that every conducting way of an edge passes",
     limits=("policy when-needed: a gate without a bead fails only where like gates have one; our choice",),
