@@ -6,11 +6,12 @@ import math
 from collections import Counter, defaultdict
 from typing import TYPE_CHECKING
 
-from gatecheck.design.model import Design, Pad, Part, Pin, Place
+from gatecheck.design.model import Pad, Part, Pin, Place, joined
 
 if TYPE_CHECKING:
     from collections.abc import Iterable, Mapping
 
+    from gatecheck.design.model import Design
     from gatecheck.parse.board import BoardFile, FootprintForm, PadForm
     from gatecheck.parse.netlist import Component, NetlistFile, NetNode
 
@@ -24,7 +25,7 @@ def from_board(board: BoardFile) -> Design:
     path = board.document.path
     names = _identities(form.reference for form in board.footprints)
     parts = {name: _part_of_footprint(name, form, path) for name, form in zip(names, board.footprints, strict=True)}
-    return Design(path, "board", parts, _nets(parts.values()))
+    return joined(path, "board", parts)
 
 
 def from_netlist(netlist: NetlistFile) -> Design:
@@ -43,7 +44,7 @@ def from_netlist(netlist: NetlistFile) -> Design:
     for reference, mine in nodes.items():
         # Pins of a part that the file does not list: kept, so that nothing of the net is lost.
         parts[reference] = _unlisted_part(reference, mine, path)
-    return Design(path, "netlist", parts, _nets(parts.values()))
+    return joined(path, "netlist", parts)
 
 
 def _identities(references: Iterable[str]) -> list[str]:
@@ -55,15 +56,6 @@ def _identities(references: Iterable[str]) -> list[str]:
         many = seen[reference] > 1 or not reference
         names.append(f"{reference}~{seen[reference]}" if many else reference)
     return names
-
-
-def _nets(parts: Iterable[Part]) -> dict[str, tuple[Pin, ...]]:
-    nets: dict[str, list[Pin]] = defaultdict(list)
-    for part in parts:
-        for pin in part.pins:
-            if pin.net:
-                nets[pin.net].append(pin)
-    return {name: tuple(pins) for name, pins in nets.items()}
 
 
 def _part_of_footprint(name: str, form: FootprintForm, path: str) -> Part:

@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from dataclasses import dataclass, field
+from dataclasses import dataclass
 from functools import cached_property
 from typing import TYPE_CHECKING, Any
 
@@ -84,29 +84,38 @@ class Part:
 
 @dataclass(frozen=True)
 class Design:
-    """Parts and nets of one design.
+    """Parts and nets of one design, joined in one graph.
 
-    `source` is the path of the file it came from, `kind` what that is (board, netlist).
+    `source` is the path of the file it came from, `kind` what that is (board, netlist). `graph` has the nets
+    `("net", name)` and the parts `("part", id)` as nodes, and the pins as edges with the Pin in `pin`.
     """
 
     source: str
     kind: str
     parts: Mapping[str, Part]
-    nets: Mapping[str, tuple[Pin, ...]] = field(default_factory=dict)
+    graph: nx.MultiGraph[Any]
 
     @cached_property
-    def graph(self) -> nx.MultiGraph[Any]:
-        """Nets `("net", name)` and parts `("part", id)` as nodes, pins as edges with the Pin in `pin`."""
-        import networkx as nx  # noqa: PLC0415 (100 ms that `--help` and `nets` need not pay)
-
-        graph = nx.MultiGraph()
-        graph.add_nodes_from(("part", key) for key in self.parts)
-        graph.add_nodes_from(("net", name) for name in self.nets)
-        graph.add_edges_from(
-            (("net", name), ("part", pin.part), {"pin": pin}) for name, pins in self.nets.items() for pin in pins
-        )
-        return graph
+    def nets(self) -> Mapping[str, tuple[Pin, ...]]:
+        """The pins of every net."""
+        return {
+            name: tuple(pin for _, _, pin in self.graph.edges((what, name), data="pin"))
+            for what, name in self.graph.nodes
+            if what == "net"
+        }
 
     def part_of(self, pin: Pin) -> Part:
         """The part a pin belongs to."""
         return self.parts[pin.part]
+
+
+def joined(source: str, kind: str, parts: Mapping[str, Part]) -> Design:
+    """The Design of some parts: the graph is made from their pins."""
+    import networkx as nx  # noqa: PLC0415 (100 ms that `--help` need not pay)
+
+    graph = nx.MultiGraph()
+    graph.add_nodes_from(("part", key) for key in parts)
+    graph.add_edges_from(
+        (("net", pin.net), ("part", key), {"pin": pin}) for key, part in parts.items() for pin in part.pins if pin.net
+    )
+    return Design(source, kind, parts, graph)

@@ -14,6 +14,8 @@ from gatecheck.networks.kinds import Kinded, Sort, kind_of
 if TYPE_CHECKING:
     from collections.abc import Iterable, Mapping
 
+    import networkx as nx
+
     from gatecheck.design.model import Design, Pin
 
 # Names of supplies and grounds, as the last part of a net's name. Origin: common practice.
@@ -56,20 +58,29 @@ class Circuit:
         self.kinds: Mapping[str, Kinded] = {key: kind_of(part) for key, part in design.parts.items()}
 
     @cached_property
-    def _elements(self) -> Mapping[str, list[Element]]:
-        found: dict[str, list[Element]] = defaultdict(list)
+    def graph(self) -> nx.MultiGraph[str]:
+        """Nets as nodes, two-terminal elements as edges with the Element in `element`."""
+        import networkx as nx  # noqa: PLC0415 (100 ms that `--help` need not pay)
+
+        graph: nx.MultiGraph[str] = nx.MultiGraph()
         for key, part in self.design.parts.items():
             kinded = self.kinds[key]
-            if kinded.sort not in _ELEMENTS or not 1 < len(part.nets()) <= _TWO + 1:
-                continue
-            for element in _elements_of(key, kinded, part.pins):
-                found[element.a].append(element)
-                found[element.b].append(element)
-        return found
+            if kinded.sort in _ELEMENTS and 1 < len(part.nets()) <= _TWO + 1:
+                for element in _elements_of(key, kinded, part.pins):
+                    graph.add_edge(element.a, element.b, element=element)
+        return graph
 
     def elements(self, net: str) -> list[Element]:
         """The two-terminal elements on a net."""
-        return self._elements.get(net, [])
+        known = self._elements.get(net)
+        if known is None:
+            edges = self.graph.edges(net, data="element") if net in self.graph else ()
+            known = self._elements[net] = [element for _, _, element in edges]
+        return known
+
+    @cached_property
+    def _elements(self) -> dict[str, list[Element]]:
+        return {}
 
     def between(self, net: str, others: Iterable[str], *sorts: Sort) -> list[Element]:
         """Elements of these sorts from a net to any of the others."""
@@ -95,18 +106,28 @@ class Circuit:
 
     def tied(self, net: str) -> frozenset[str]:
         """The net and those joined to it by net ties, links of 0 ohm and current shunts."""
-        if not net:
-            return frozenset()
-        reached, edge = {net}, {net}
-        for _ in range(_SHUNT_HOPS):
-            edge = {
-                element.other(here)
-                for here in edge
-                for element in self.elements(here)
-                if element.fitted and is_shunt(element)
-            } - reached
-            reached |= edge
-        return frozenset(reached)
+        known = self._tied.get(net)
+        if known is None:
+            reached, edge = ({net}, {net}) if net else (set[str](), set[str]())
+            for _ in range(_SHUNT_HOPS):
+                edge = {other for here in edge for other in self._shunts.get(here, ())} - reached
+                reached |= edge
+            known = self._tied[net] = frozenset(reached)
+        return known
+
+    @cached_property
+    def _tied(self) -> dict[str, frozenset[str]]:
+        return {}
+
+    @cached_property
+    def _shunts(self) -> Mapping[str, list[str]]:
+        """The nets at the other ends of a net's shunts. Grounds have thousands of elements and few shunts."""
+        found: dict[str, list[str]] = defaultdict(list)
+        for a, b, element in self.graph.edges(data="element"):
+            if element.fitted and is_shunt(element):
+                found[a].append(b)
+                found[b].append(a)
+        return found
 
 
 def is_shunt(element: Element) -> bool:

@@ -3,12 +3,13 @@
 from __future__ import annotations
 
 from dataclasses import dataclass
+from functools import cached_property
 from typing import TYPE_CHECKING
 
 from gatecheck.networks.ports import CONNECTOR
 
 if TYPE_CHECKING:
-    from collections.abc import Mapping, Sequence
+    from collections.abc import Callable, Mapping, Sequence
 
     from gatecheck.networks.circuit import Circuit
     from gatecheck.networks.terminals import Transistor
@@ -19,7 +20,7 @@ _Key = tuple[str, "str | None"]
 Found = tuple[str, dict[str, str]]
 
 
-@dataclass(frozen=True, slots=True)
+@dataclass(frozen=True)
 class Surroundings:
     """All that the evidence for one transistor may look at."""
 
@@ -33,19 +34,40 @@ class Surroundings:
         walked = self.walks[transistor.key]
         return walked.rank >= CONNECTOR and not walked.feed_only
 
+    @cached_property
+    def by_drain(self) -> Mapping[str, list[Transistor]]:
+        """The transistors by the net of their drain."""
+        return _grouped(self.transistors, lambda transistor: transistor.drain_net)
+
+    @cached_property
+    def by_source(self) -> Mapping[str, list[Transistor]]:
+        """The transistors by the net of their source."""
+        return _grouped(self.transistors, lambda transistor: transistor.source_net)
+
     def partners(self, transistor: Transistor) -> list[tuple[Transistor, str]]:
-        """The transistors that form a half bridge with this one, and the net in the middle."""
-        found = []
-        for other in self.transistors:
-            if other.part == transistor.part and other.unit == transistor.unit:
-                continue
-            for middle, end in (
-                (transistor.source_net, other.drain_net),
-                (transistor.drain_net, other.source_net),
-            ):
-                if middle and end and end in self.circuit.tied(middle) and not self.circuit.is_rail(middle):
-                    found.append((other, middle))
-        return [(other, net) for other, net in found if self.driven(other)]
+        """The driven transistors that form a half bridge with this one, and the net in the middle."""
+        known = self._partners.get(transistor.key)
+        if known is None:
+            known = self._partners[transistor.key] = [
+                (other, middle)
+                for middle, others in ((transistor.source_net, self.by_drain), (transistor.drain_net, self.by_source))
+                if middle and not self.circuit.is_rail(middle)
+                for net in sorted(self.circuit.tied(middle))
+                for other in others.get(net, ())
+                if other.key != transistor.key and self.driven(other)
+            ]
+        return known
+
+    @cached_property
+    def _partners(self) -> dict[_Key, list[tuple[Transistor, str]]]:
+        return {}
+
+
+def _grouped(transistors: Sequence[Transistor], net_of: Callable[[Transistor], str]) -> Mapping[str, list[Transistor]]:
+    groups: dict[str, list[Transistor]] = {}
+    for transistor in transistors:
+        groups.setdefault(net_of(transistor), []).append(transistor)
+    return groups
 
 
 def name_of(key: _Key) -> str:

@@ -19,6 +19,8 @@ from gatecheck.parse.spans import Broken, Spans, index
 if TYPE_CHECKING:
     from collections.abc import Iterator
 
+    from numpy.typing import NDArray
+
     from gatecheck.parse.sexpr import Node
 
 # Our choice: no form that is looked into (a part, a pad, a net with all its nodes) comes near this size.
@@ -28,6 +30,7 @@ _MAX_REMEMBERED = 160
 _REMEMBERED_FORMS = 100_000
 _EXCERPT = 60
 _HEAD = re.compile(rb'\(\s*([^()"\s]*)')
+_LINE_END = ord("\n")
 _BOM = b"\xef\xbb\xbf"
 
 
@@ -62,6 +65,7 @@ class Document:
     notes: list[str] = field(default_factory=list)
     _reader: Reader = field(default_factory=Reader)
     _memory: dict[bytes, Node] = field(default_factory=dict)
+    _line_ends: list[NDArray[np.int64]] = field(default_factory=list)
 
     def children(self, parent: Span) -> list[Span]:
         """The forms directly inside a form, in file order. Shallower than the indexed depth only."""
@@ -136,7 +140,11 @@ class Document:
 
     def place(self, offset: int) -> tuple[int, int]:
         """Line and column of a byte offset, both from 1."""
-        return place_in(self.data, offset)
+        if not self._line_ends:
+            self._line_ends.append(np.flatnonzero(np.frombuffer(self.data, dtype=np.uint8) == _LINE_END))
+        line = int(np.searchsorted(self._line_ends[0], offset))
+        begin = int(self._line_ends[0][line - 1]) + 1 if line else 0
+        return line + 1, _column(self.data, begin, offset)
 
     def error(self, offset: int, message: str, next_step: str) -> InputError:
         """An error that points at an offset of this file."""
@@ -170,7 +178,11 @@ def place_in(data: bytes, offset: int) -> tuple[int, int]:
     """Line and column of a byte offset, both from 1; columns count characters."""
     line = data.count(b"\n", 0, offset) + 1
     begin = data.rfind(b"\n", 0, offset) + 1
-    return line, len(data[begin:offset].decode("utf-8", errors="replace")) + 1
+    return line, _column(data, begin, offset)
+
+
+def _column(data: bytes, begin: int, offset: int) -> int:
+    return len(data[begin:offset].decode("utf-8", errors="replace")) + 1
 
 
 def error_at(path: str, data: bytes, offset: int, message: str, next_step: str) -> InputError:

@@ -15,6 +15,8 @@ if TYPE_CHECKING:
     from gatecheck.networks.find import Networks
     from gatecheck.networks.model import EdgePaths, GateNetwork
 
+# Our choice: as many names as a reader takes in at once.
+_LISTED = 8
 _DIODES = (Sort.DIODE, Sort.ZENER)
 # What tells the channels of a driver or connector apart, at the end of a pin's name.
 _CHANNEL = re.compile(r"(?<=[A-Z_])(?:_?[ABCUVW]|_?\d+)$")
@@ -115,5 +117,14 @@ def _part(networks: Networks, key: str) -> str:
 
 
 def names(gates: Iterable[GateNetwork]) -> str:
-    """References of some gates, in natural order of the design."""
-    return " ".join(safe(name_of(gate.transistor.key)) for gate in gates)
+    """References of some gates, in natural order of the design; of many, the first and how many more."""
+    return listed([safe(name_of(gate.transistor.key)) for gate in gates])
+
+
+def listed(found: list[str]) -> str:
+    """Names in a row; of many, the first and how many more."""
+    return (
+        " ".join(found)
+        if len(found) <= _LISTED
+        else f"{' '.join(found[: _LISTED - 2])} and {len(found) - _LISTED + 2} more"
+    )

@@ -11,7 +11,7 @@ from typing import TYPE_CHECKING
 
 from gatecheck.finding import Level, Verdict
 from gatecheck.networks.surroundings import name_of
-from gatecheck.report.chain import alike, chain, names, shunts
+from gatecheck.report.chain import alike, chain, listed, names, shunts
 from gatecheck.report.wording import SHORT_CAUTION, counted, safe, summary
 
 if TYPE_CHECKING:
@@ -113,10 +113,10 @@ def _networks(networks: Networks) -> list[_Line]:
         likely = " (likely)" if roles[first.transistor.key].likely else ""
         for i, text in enumerate(chain(networks, first)):
             label = names(group) if i == 0 else ""
-            lines.append([(f"{_INDENT}{label:<{min(width, 40)}}   ", "bold"), (text + (likely if i == 0 else ""), "")])
+            lines.append([(f"{_INDENT}{label:<{width}}   ", "bold"), (text + (likely if i == 0 else ""), "")])
         extra = "; ".join(filter(None, (shunts(networks, first), _company(first.parallel_with, first.alternates))))
         if extra:
-            lines.append([(f"{_INDENT}{'':<{min(width, 40)}}   {extra}", "dim")])
+            lines.append([(f"{_INDENT}{'':<{width}}   {extra}", "dim")])
     if groups:
         lines.append([])
     return lines
@@ -140,7 +140,7 @@ def _worst_first(findings: Iterable[Finding]) -> list[Finding]:
 
 def _finding(finding: Finding) -> list[_Line]:
     word = finding.level.value if finding.verdict is Verdict.FAIL else finding.verdict.value
-    subjects = " ".join(safe(name) for name in (finding.subject, *finding.also))
+    subjects = listed([safe(name) for name in (finding.subject, *finding.also)])
     edge = f", {finding.edge} edge" if finding.edge else ""
     style = _STYLES[finding.level]
     lines: list[_Line] = [
@@ -157,7 +157,7 @@ def _finding(finding: Finding) -> list[_Line]:
         wanted: dict[str, list[str]] = {}
         for ask in finding.ask:
             wanted.setdefault(ask.datum.replace("_", " "), []).append(safe(ask.part))
-        said = "; ".join(f"{datum} of {' '.join(parts)}" for datum, parts in wanted.items())
+        said = "; ".join(f"{datum} of {listed(parts)}" for datum, parts in wanted.items())
         lines.append([(f"{pad}would settle it: {said}", "dim")])
     if finding.advice:
         lines.append([(f"{pad}{finding.advice}", "")])

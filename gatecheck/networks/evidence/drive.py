@@ -32,6 +32,7 @@ def drive(around: Surroundings, transistor: Transistor) -> Iterator[Found]:
     circuit, walked = around.circuit, around.walks[transistor.key]
     if circuit.is_rail(transistor.gate_net):
         yield "rail_gate", {"net": transistor.gate_net}
+        return
     if not walked.drives:
         yield "no_drive", {}
         return

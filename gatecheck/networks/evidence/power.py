@@ -43,22 +43,23 @@ def bridge(around: Surroundings, transistor: Transistor) -> Iterator[Found]:
             yield "bus_capacitor", {"part": element.part}
     if not partners:
         yield from _back_to_back(around, transistor)
-    for other in around.transistors:
-        same = (other.drain_net, other.source_net) == (transistor.drain_net, transistor.source_net)
-        if other.part != transistor.part and same and other.key not in around.alternates.get(transistor.key, ()):
+    for other in around.by_drain.get(transistor.drain_net, ()):
+        beside = other.key not in around.alternates.get(transistor.key, ())
+        if other.part != transistor.part and other.source_net == transistor.source_net and beside:
             yield "paralleled", {"part": name_of(other.key)}
+            return
 
 
 def _back_to_back(around: Surroundings, transistor: Transistor) -> Iterator[Found]:
     """Two transistors with one main terminal in common, neither in a bridge: a switch for both directions."""
-    for other in around.transistors:
-        if other.key == transistor.key or around.partners(other):
+    for common, others in ((transistor.drain_net, around.by_drain), (transistor.source_net, around.by_source)):
+        if not common or around.circuit.is_rail(common):
             continue
-        drains = transistor.drain_net == other.drain_net
-        sources = transistor.source_net == other.source_net
-        common = transistor.drain_net if drains else transistor.source_net
-        if drains != sources and common and not around.circuit.is_rail(common):
-            yield "back_to_back", {"part": name_of(other.key), "net": common}
+        for other in others.get(common, ()):
+            drains, sources = (transistor.drain_net == other.drain_net, transistor.source_net == other.source_net)
+            if other.key != transistor.key and drains != sources and not around.partners(other):
+                yield "back_to_back", {"part": name_of(other.key), "net": common}
+                return
 
 
 def load(around: Surroundings, transistor: Transistor) -> Iterator[Found]:
