@@ -59,7 +59,7 @@ def _guarded(options: argparse.Namespace) -> int:
     except BrokenPipeError:
         raise
     except InputError as why:
-        _complain(str(why), why.next_step, why.excerpt)
+        _complain(why.message, why.next_step, why.excerpt, _place(why.path, why.line, why.column))
         return UNREADABLE
     except UsageError as why:
         _complain(str(why), why.next_step)
@@ -81,10 +81,15 @@ def _fault(options: argparse.Namespace, why: BaseException, message: str) -> int
     return FAULT
 
 
-def _complain(message: str, next_step: str, excerpt: str = "") -> None:
+def _place(path: str, line: int, column: int) -> str:
+    return f"{path}:{line}:{column}" if line else path
+
+
+def _complain(message: str, next_step: str, excerpt: str = "", place: str = "") -> None:
     from gatecheck.report.wording import safe  # noqa: PLC0415 (after --help)
 
-    print(f"gatecheck: {safe(message)}", file=sys.stderr)
+    where = f"{safe(place)}: " if place else ""
+    print(f"gatecheck: {where}{safe(message)}", file=sys.stderr)
     if excerpt:
         print(f"    {safe(excerpt)}", file=sys.stderr)
     if next_step:
@@ -179,7 +184,9 @@ def _nets(options: argparse.Namespace) -> int:
 
         _write(options, nets_text(loaded.source.path, nets, color=_colored(options)))
     for trouble in loaded.troubles:
-        _complain(str(trouble), trouble.next_step, trouble.excerpt)
+        _complain(
+            trouble.message, trouble.next_step, trouble.excerpt, _place(trouble.path, trouble.line, trouble.column)
+        )
     return UNREADABLE if loaded.troubles else OK
 
 
@@ -218,8 +225,7 @@ def _outcome(report: Report, options: argparse.Namespace) -> int:
 
 
 def _complain_unread(entry: Unread) -> None:
-    place = f"{entry.path}:{entry.line}:{entry.column}" if entry.line else entry.path
-    _complain(f"{place}: {entry.message}" if place else entry.message, entry.next_step, entry.excerpt)
+    _complain(entry.message, entry.next_step, entry.excerpt, _place(entry.path, entry.line, entry.column))
 
 
 def _colored(options: argparse.Namespace) -> bool:

@@ -7,19 +7,25 @@ R2 0R dnp     ho g1                not fitted
 
 from __future__ import annotations
 
+from collections import defaultdict
+from typing import TYPE_CHECKING
+
 from gatecheck.design.build import from_netlist
-from gatecheck.design.model import Design
 from gatecheck.networks.find import Networks, find_networks
-from gatecheck.networks.model import GateNetwork, Switch
 from gatecheck.parse.document import open_document
 from gatecheck.parse.netlist import read_netlist
+
+if TYPE_CHECKING:
+    from gatecheck.design.model import Design
+    from gatecheck.networks.model import GateNetwork, Switch
 
 FIELDS = ("description", "footprint", "lib")
 
 
 def netlist_text(circuit: str) -> str:
     """The netlist of a circuit, as the newest exporter writes it."""
-    components, nets = [], {}
+    components: list[str] = []
+    nets: dict[str, list[str]] = defaultdict(list)
     for line in circuit.strip().splitlines():
         words = line.split()
         if not words or words[0].startswith("#"):
@@ -36,7 +42,7 @@ def netlist_text(circuit: str) -> str:
         for number, (name, equals, net) in enumerate(pins, start=1):
             function = f' (pinfunction "{name}")' if equals else ""
             node = f'(node (ref "{reference}") (pin "{number}"){function} (pintype "passive"))'
-            nets.setdefault(net if equals else name, []).append(node)
+            nets[net if equals else name].append(node)
     rows = [f'(net (code "{i}") (name "{name}") {" ".join(nodes)})' for i, (name, nodes) in enumerate(nets.items())]
     return f'(export (version "E") (components {" ".join(components)}) (nets {" ".join(rows)}))'
 

@@ -7,7 +7,7 @@ are left where they are. Lengths are millimetres and angles degrees, as in the f
 from __future__ import annotations
 
 from dataclasses import dataclass, field
-from typing import TYPE_CHECKING
+from typing import TYPE_CHECKING, Any
 
 from gatecheck.parse.document import Document, Malformed, Span
 from gatecheck.parse.fields import flag, number, numbers, text, whole
@@ -43,7 +43,7 @@ class PadForm:
     angle_deg: float
     width_mm: float
     height_mm: float
-    offset_mm: tuple[float, float]
+    offset_mm: tuple[float, ...]
     corner_ratio: float
     layers: tuple[str, ...]
     net: str
@@ -236,24 +236,21 @@ class _Footprint:
         words = self.document.opening(span, children[0] if children else None).atoms()
         if len(words) < 3:  # noqa: PLR2004 (number, kind, shape)
             raise Malformed(0, "a pad needs a number, a kind and a shape")
-        forms: dict[str, Node] = {}
+        said: dict[str, Any] = {}
         for child in children:
-            head = self.document.head_of(child.start)
-            if head in _PAD_FORMS:
+            convert = _PAD_FORMS.get(self.document.head_of(child.start))
+            if convert is not None:
                 try:
-                    forms[head] = self.document.read(child)
-                    _PAD_FORMS[head](forms[head])
+                    node = self.document.read(child)
+                    said[node.head] = convert(node)
                 except Malformed as bad:
                     raise Malformed(child.start - span.start + bad.offset, bad.message) from None
-        self.pads.append(self._pad(words, forms, span))
+        self.pads.append(self._pad(words, said, span))
 
-    def _pad(self, words: list[str], forms: Mapping[str, Node], span: Span) -> PadForm:
-        x_mm, y_mm, angle_deg = numbers(forms["at"], 3, at_least=2) if "at" in forms else (0.0, 0.0, 0.0)
-        width_mm, height_mm = numbers(forms["size"], 2) if "size" in forms else (0.0, 0.0)
-        drill = forms.get("drill")
-        offset = drill.form("offset") if drill is not None else None
-        offset_mm = numbers(offset, 2) if offset is not None else (0.0, 0.0)
-        function = text(forms["pinfunction"]) if "pinfunction" in forms else ""
+    def _pad(self, words: list[str], said: Mapping[str, Any], span: Span) -> PadForm:
+        x_mm, y_mm, angle_deg = said.get("at", (0.0, 0.0, 0.0))
+        width_mm, height_mm = said.get("size", (0.0, 0.0))
+        function: str = said.get("pinfunction", "")
         if self.version >= _NETS_BY_NAME and words[0] and function.endswith(f"_{words[0]}"):
             function = function[: -len(words[0]) - 1]
         return PadForm(
@@ -265,35 +262,35 @@ class _Footprint:
             angle_deg=angle_deg,
             width_mm=width_mm,
             height_mm=height_mm,
-            offset_mm=(offset_mm[0], offset_mm[1]),
-            corner_ratio=number(forms["roundrect_rratio"]) if "roundrect_rratio" in forms else 0.0,
-            layers=tuple(map(self.board_layers.name, forms["layers"].atoms())) if "layers" in forms else (),
-            net=self._net(forms["net"]) if "net" in forms else "",
+            offset_mm=said.get("drill", (0.0, 0.0)),
+            corner_ratio=said.get("roundrect_rratio", 0.0),
+            layers=tuple(map(self.board_layers.name, said.get("layers", ()))),
+            net=self._net(said["net"]) if "net" in said else "",
             function="" if function == "~" else function,
-            electrical=text(forms["pintype"]) if "pintype" in forms else "",
+            electrical=said.get("pintype", ""),
             start=span.start,
         )
 
-    def _net(self, node: Node) -> str:
+    def _net(self, words: list[str]) -> str:
         """`(net 3 "HS_GATE")` up to v9; `(net "HS_GATE")` after, where a net may well be called "3"."""
-        words = node.atoms()
         if len(words) > 1:
             return words[1]
         return words[0] if self.version >= _NETS_BY_NAME or not self.nets else self.nets.get(words[0], "")
 
 
-def _check_numbers(count: int) -> Callable[[Node], object]:
-    return lambda node: numbers(node, count)
+def _drill_offset(node: Node) -> tuple[float, ...]:
+    """How far the copper is shifted against the hole; written inside `drill` even for pads without one."""
+    offset = node.form("offset")
+    return numbers(offset, 2) if offset is not None else (0.0, 0.0)
 
 
-# What is read of a pad, each with the check that must hold before the pad is put together, so that the
-# trouble is reported at the form that has it.
-_PAD_FORMS: Mapping[str, Callable[[Node], object]] = {
+# What is read of a pad, and how. Converted form by form, so that trouble is reported at the form that has it.
+_PAD_FORMS: Mapping[str, Callable[[Node], Any]] = {
     "at": lambda node: numbers(node, 3, at_least=2),
-    "size": _check_numbers(2),
-    "drill": lambda node: [numbers(offset, 2) for offset in node.forms("offset")],
-    "layers": len,
-    "net": text,
+    "size": lambda node: numbers(node, 2),
+    "drill": _drill_offset,
+    "layers": lambda node: node.atoms(),
+    "net": lambda node: [text(node), *node.atoms()[1:]],
     "pinfunction": text,
     "pintype": text,
     "roundrect_rratio": number,

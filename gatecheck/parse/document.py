@@ -29,6 +29,8 @@ _MAX_FORM = 8 * 1024 * 1024
 _MAX_REMEMBERED = 160
 _REMEMBERED_FORMS = 100_000
 _EXCERPT = 60
+# Forms whose keywords are compared at once. Our choice: bounds memory on a file of nothing but brackets.
+_BATCH = 1 << 16
 _HEAD = re.compile(rb'\(\s*([^()"\s]*)')
 _LINE_END = ord("\n")
 _BOM = b"\xef\xbb\xbf"
@@ -71,7 +73,8 @@ class Document:
         """The forms directly inside a form, in file order. Shallower than the indexed depth only."""
         depth = parent.depth + 1
         opens, closes = self.spans.opens[depth], self.spans.closes[depth]
-        low, high = np.searchsorted(opens, (parent.start, parent.end))
+        # Of the index's own type: numpy would turn the whole index into another one for each look-up.
+        low, high = np.searchsorted(opens, np.array((parent.start, parent.end), dtype=opens.dtype))
         return [
             Span(start, end + 1, depth)
             for start, end in zip(opens[low:high].tolist(), closes[low:high].tolist(), strict=True)
@@ -84,19 +87,27 @@ class Document:
         leading bytes, all at once.
         """
         opens, closes = self.spans.opens[1], self.spans.closes[1]
+        for at in range(0, len(opens), _BATCH):
+            some = opens[at : at + _BATCH]
+            likely = self._likely(some, heads)
+            ends = closes[at : at + _BATCH][likely]
+            for start, end in zip(some[likely].tolist(), ends.tolist(), strict=True):
+                head = self.head_of(start)
+                if head in heads:
+                    yield head, Span(start, end + 1, 1)
+
+    def _likely(self, opens: NDArray[np.int32], heads: tuple[str, ...]) -> NDArray[np.bool_]:
+        """Which forms have a keyword that begins like one of these."""
         raw = np.frombuffer(self.data, dtype=np.uint8)
-        likely = np.zeros(len(opens), dtype=bool)
+        last = len(raw) - 1
+        # A blank after the bracket is legal, though no program writes it.
+        likely = raw[np.minimum(opens + 1, last)] <= ord(" ")
         for head in heads:
             match = np.ones(len(opens), dtype=bool)
             for at, byte in enumerate(head.encode()[:3], start=1):
-                match &= raw[np.minimum(opens + at, len(raw) - 1)] == byte
+                match &= raw[np.minimum(opens + at, last)] == byte
             likely |= match
-        # A blank after the bracket is legal, though no program writes it.
-        likely |= raw[np.minimum(opens + 1, len(raw) - 1)] <= ord(" ")
-        for start, end in zip(opens[likely].tolist(), closes[likely].tolist(), strict=True):
-            head = self.head_of(start)
-            if head in heads:
-                yield head, Span(start, end + 1, 1)
+        return likely
 
     def head_of(self, start: int) -> str:
         """The keyword of the form that opens at `start`."""

@@ -62,7 +62,8 @@ def _stem(path: Path) -> Path:
 
 
 def _files(path: Path) -> list[Path]:
-    if not path.is_dir():
+    # Not Path.is_dir: it raises for names that the system cannot hold, and opening says that better.
+    if not os.path.isdir(path):  # noqa: PTH112 (see above)
         return [path]
     found = _designs_below(path)
     if not found:

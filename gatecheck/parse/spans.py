@@ -20,7 +20,7 @@ if TYPE_CHECKING:
     from numpy.typing import NDArray
 
 # Our choice: peak memory stays a few chunks above the file itself, and numpy's call cost is lost in them.
-_CHUNK = 1 << 20
+_CHUNK = 1 << 18
 # Real design files stay below 15; the parser behind the index recurses, so depth is bounded here.
 MAX_DEPTH = 100
 # Footprint, pad, pad's children, and one more for schematic symbols.
@@ -41,24 +41,28 @@ class Broken:
 
 @dataclass(frozen=True, slots=True)
 class Spans:
-    """`opens[d]` and `closes[d]` are the offsets of the brackets of all forms of depth d, in file order."""
+    """`opens[d]` and `closes[d]` are the offsets of the brackets of all forms of depth d, in file order.
 
-    opens: tuple[NDArray[np.int64], ...]
-    closes: tuple[NDArray[np.int64], ...]
+    Offsets fit 32 bits: no file above files.MAX_BYTES is read.
+    """
+
+    opens: tuple[NDArray[np.int32], ...]
+    closes: tuple[NDArray[np.int32], ...]
 
 
 def index(data: bytes) -> Spans | Broken:
     """Find all forms of `data` down to the indexed depth, or say where brackets or quotes do not match."""
-    opens: list[list[NDArray[np.int64]]] = [[] for _ in range(_INDEXED)]
-    closes: list[list[NDArray[np.int64]]] = [[] for _ in range(_INDEXED)]
-    depth, quotes, last_quote, at = 0, 0, 0, 0
+    opens: list[list[NDArray[np.int32]]] = [[] for _ in range(_INDEXED)]
+    closes: list[list[NDArray[np.int32]]] = [[] for _ in range(_INDEXED)]
+    depth, quotes, last_quote, carried, at = 0, 0, 0, 0, 0
     while at < len(data):
-        end = _chunk_end(data, at)
+        end = min(at + _CHUNK, len(data))
         chunk = np.frombuffer(data, dtype=np.uint8, count=end - at, offset=at)
         places = np.flatnonzero(_EVENT[chunk])
         kinds = chunk[places]
-        if _BACKSLASH in data[at:end]:
-            real = ~((kinds == _QUOTE) & _after_odd_backslashes(chunk, places))
+        if carried or data.find(b"\\", at, end) >= 0:
+            odd, carried = _after_odd_backslashes(chunk, places, carried)
+            real = ~((kinds == _QUOTE) & odd)
             places, kinds = places[real], kinds[real]
         is_quote = kinds == _QUOTE
         before = np.cumsum(is_quote, dtype=np.int64) + quotes
@@ -66,7 +70,7 @@ def index(data: bytes) -> Spans | Broken:
             last_quote = at + int(places[is_quote][-1])
             quotes = int(before[-1])
         bracket = (before % 2 == 0) & ~is_quote
-        places, kinds = places[bracket] + at, kinds[bracket]
+        places, kinds = (places[bracket] + at).astype(np.int32), kinds[bracket]
         if len(places):
             is_open = kinds == _OPEN
             level = np.cumsum(np.where(is_open, 1, -1), dtype=np.int64) + depth
@@ -84,26 +88,26 @@ def index(data: bytes) -> Spans | Broken:
     return _unclosed(spans) if depth else spans
 
 
-def _chunk_end(data: bytes, start: int) -> int:
-    """A chunk never ends inside a run of backslashes, so that runs can be counted by chunk."""
-    end = min(start + _CHUNK, len(data))
-    while end < len(data) and data[end - 1] == _BACKSLASH:
-        end += 1
-    return end
+def _after_odd_backslashes(
+    chunk: NDArray[np.uint8], places: NDArray[np.int64], carried: int
+) -> tuple[NDArray[np.bool_], int]:
+    """For each place: is the run of backslashes just before it of odd length?
 
-
-def _after_odd_backslashes(chunk: NDArray[np.uint8], places: NDArray[np.int64]) -> NDArray[np.bool_]:
-    """For each place: is the run of backslashes just before it of odd length?"""
+    `carried` is the length of the run that ends just before the chunk; returned anew for the next one.
+    """
     slashes = np.flatnonzero(chunk == _BACKSLASH)
     starts = slashes[np.diff(slashes, prepend=-2) != 1]
-    run = np.searchsorted(starts, places) - 1
-    behind = (places > 0) & (run >= 0) & (chunk[np.maximum(places - 1, 0)] == _BACKSLASH)
-    length = places - starts[np.maximum(run, 0)]
-    odd: NDArray[np.bool_] = behind & (length % 2 == 1)
-    return odd
+    # A run that begins with the chunk began `carried` places earlier.
+    begins = np.where(starts == 0, -carried, starts)
+    run = np.maximum(np.searchsorted(starts, places) - 1, 0)
+    behind = (places > 0) & (chunk[np.maximum(places - 1, 0)] == _BACKSLASH)
+    length = places - begins[run] if len(starts) else np.zeros_like(places)
+    odd: NDArray[np.bool_] = np.where(places == 0, carried % 2 == 1, behind & (length % 2 == 1))
+    left = len(chunk) - int(begins[-1]) if len(slashes) and slashes[-1] == len(chunk) - 1 else 0
+    return odd, left
 
 
-def _bad_level(places: NDArray[np.int64], level: NDArray[np.int64]) -> Broken | None:
+def _bad_level(places: NDArray[np.int32], level: NDArray[np.int64]) -> Broken | None:
     if level.min() < 0:
         return Broken(int(places[np.argmax(level < 0)]), "this closing bracket has no opening one")
     if level.max() > MAX_DEPTH:
@@ -111,8 +115,11 @@ def _bad_level(places: NDArray[np.int64], level: NDArray[np.int64]) -> Broken | 
     return None
 
 
-def _joined(parts: list[NDArray[np.int64]]) -> NDArray[np.int64]:
-    return np.concatenate(parts) if parts else np.zeros(0, dtype=np.int64)
+def _joined(parts: list[NDArray[np.int32]]) -> NDArray[np.int32]:
+    """One array of many; the parts are given up, since a hostile file has as many brackets as bytes."""
+    whole = np.concatenate(parts) if parts else np.zeros(0, dtype=np.int32)
+    parts.clear()
+    return whole
 
 
 def _unclosed(spans: Spans) -> Broken:

@@ -4,9 +4,10 @@
 transistor. Neither raises, whatever the text: what cannot be read is None, what can be read in more than one
 way is an interval over the readings, and flags say which of this happened.
 
-The way of a text: ``scanner`` cuts it into quantities and words, ``numeral`` knows how numbers are written,
-``vocabulary`` knows the words, ``reading`` decides for each kind of part which quantity is its value,
-``part_number`` looks for an order code, and ``value_text`` puts the answer together.
+The way of a text: ``scanner`` cuts it into quantities and words, ``reading`` says what a quantity can mean for
+each kind of part, ``choice`` picks among several, ``principal`` finds the value and the kind of part,
+``ratings`` and ``part_number`` what stands beside it, and ``value_text`` puts the answer together. ``numeral``
+knows how numbers are written, ``vocabulary`` the words, ``model`` the results and their flags.
 """
 
 from .model import FLAGS, Amount, Kind, TransistorText, Value

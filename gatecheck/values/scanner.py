@@ -78,21 +78,12 @@ _TOKEN = re.compile(
     )
   | (?P<word>[A-Za-z]+(?![A-Za-z0-9])|[A-Za-z0-9]+(?:[-.][A-Za-z0-9]+)*)
     """,
-    re.VERBOSE,
+    re.VERBOSE | re.ASCII,
 )
 
 _PREFIXES = {"K": "k", "U": "u", "N": "n", "P": "p", "milli": "m", "micro": "u", "kilo": "k"}
-_UNITS = {
-    "r": "ohm",
-    "e": "ohm",
-    "\u03c9": "ohm",
-    "ohm": "ohm",
-    "ohms": "ohm",
-    "hz": "Hz",
-    "f": "F",
-    "h": "H",
-}
-_UNITS |= {"a": "A", "v": "V", "w": "W", "c": "C", "\u00b0c": "degC", "%": "%", "mm": "mm"}
+_UNITS = dict.fromkeys(("r", "e", "ohm", "ohms", "\u03c9"), "ohm") | {"hz": "Hz", "\u00b0c": "degC"}
+_UNITS |= {"f": "F", "h": "H", "a": "A", "v": "V", "w": "W", "c": "C", "%": "%", "mm": "mm"}
 _ORDER_CODE_DIGITS = 7  # so many digits, more than four of them significant, are no value; our choice
 _VALUE_DIGITS = 4
 

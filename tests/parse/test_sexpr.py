@@ -18,7 +18,23 @@ def parsed(text: str) -> Node:
 @pytest.mark.parametrize(
     "word",
     # Each of these is changed by a plain sexpdata.loads (tried with 1.0.2).
-    ["nil", "t", "5E210000", "00000000", "007", "1_000", "NaN", "inf", "/DATA[0]", "'x", "a;b", "8878024e-3167", "#tag", "{slash}", "10\u00a0k"],
+    [
+        "nil",
+        "t",
+        "5E210000",
+        "00000000",
+        "007",
+        "1_000",
+        "NaN",
+        "inf",
+        "/DATA[0]",
+        "'x",
+        "a;b",
+        "8878024e-3167",
+        "#tag",
+        "{slash}",
+        "10\u00a0k",
+    ],
 )
 def test_bare_atoms_are_never_converted(word: str) -> None:
     node = parsed(f"(net {word})")
@@ -73,7 +89,9 @@ def by_tokens(text: str) -> list[object]:
 WORDS = st.text(st.characters(exclude_characters='()"\\', exclude_categories=["Z", "C"]), min_size=1, max_size=8)
 QUOTED = st.text(st.characters(exclude_characters='"\\', exclude_categories=["Cs"]), max_size=8).map('"{}"'.format)
 FORMS = st.recursive(
-    WORDS | QUOTED, lambda inner: st.lists(inner, max_size=4).map(lambda items: "(" + " ".join(items) + ")"), max_leaves=20
+    WORDS | QUOTED,
+    lambda inner: st.lists(inner, max_size=4).map(lambda items: "(" + " ".join(items) + ")"),
+    max_leaves=20,
 )
 
 

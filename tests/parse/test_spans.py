@@ -8,7 +8,7 @@ from hypothesis import strategies as st
 from gatecheck.parse import spans
 from gatecheck.parse.spans import Broken, Spans, index
 
-ALPHABET = st.sampled_from(['(', ')', '"', "\\", "a", " ", "\n", "(b ", '"x y"', "\\\\", '\\"'])
+ALPHABET = st.sampled_from(["(", ")", '"', "\\", "a", " ", "\n", "(b ", '"x y"', "\\\\", '\\"'])
 
 
 def plain_scan(data: bytes) -> list[tuple[int, int, int]] | None:
