@@ -10,10 +10,13 @@ from __future__ import annotations
 from collections import defaultdict
 from typing import TYPE_CHECKING
 
+from gatecheck import rulekit
 from gatecheck.design.build import from_netlist
+from gatecheck.finding import Finding, Spot
 from gatecheck.networks.find import Networks, find_networks
 from gatecheck.parse.document import open_document
 from gatecheck.parse.netlist import read_netlist
+from gatecheck.registry import rule_by_id
 
 if TYPE_CHECKING:
     from gatecheck.design.model import Design
@@ -72,3 +75,11 @@ U1 driver description=half-bridge~gate~driver HIN=in1 LIN=in2 VDD=+12V COM=GND L
 C1 100n boot sw
 L1 10u sw out
 """
+
+
+def findings_of(circuit: str, rule: str) -> list[Finding]:
+    """What one rule says of a circuit, grouped as a report has it."""
+    networks = networks_of(circuit)
+    design = rulekit.Design(networks, lambda key: Spot("circuit.net", 1, 1, key))
+    chosen = rule_by_id(rule)
+    return rulekit.grouped(design.finding(chosen, say) for say in chosen.check(design))
