@@ -136,7 +136,7 @@ def test_color_changes_no_words() -> None:
 
 def test_closed_pipe_ends_quietly() -> None:
     done = subprocess.run(
-        ["bash", "-c", f"{sys.executable} -m gatecheck nets {BOARD} --format json | head -c 10"],  # noqa: S607
+        ["bash", "-c", f"{sys.executable} -m gatecheck nets {BOARD} --format json | head -c 10"],
         capture_output=True,
         text=True,
         check=False,

@@ -53,18 +53,19 @@ def test_files_and_functions_stay_small() -> None:
                 assert (node.end_lineno or 0) - node.lineno < 60, f"{path}: {node.name}"
 
 
+OPENING = {"open", "read_text", "read_bytes", "write_text", "write_bytes", "fdopen"}
+# The catalogue reads its own data beside it; loading a design goes through files.py under the same name.
+MAY_OPEN = {"gatecheck/files.py", "gatecheck/catalogue/load.py", "gatecheck/load.py", "gatecheck/cli.py"}
+
+
 def test_only_one_module_opens_files_and_one_prints() -> None:
     for path in CODE:
+        name = path.relative_to(ROOT).as_posix()
         calls = [node.func for node in ast.walk(ast.parse(path.read_text())) if isinstance(node, ast.Call)]
-        names = {call.id for call in calls if isinstance(call, ast.Name)} | {
-            c.attr for c in calls if isinstance(c, ast.Attribute)
-        }
-        if path.name != "files.py":
-            assert "open" not in names - {"open"} or path.name == "cli.py"
-            opening = names & {"read_text", "read_bytes", "write_text", "write_bytes", "fdopen"}
-            assert not opening or path.name in ("load.py", "cli.py"), f"{path}: {opening}"
-        if path.name != "cli.py":
-            assert "print" not in names, path
+        plain = {call.id for call in calls if isinstance(call, ast.Name)}
+        methods = {call.attr for call in calls if isinstance(call, ast.Attribute)}
+        assert name in MAY_OPEN or not (plain | methods) & OPENING, name
+        assert name == "gatecheck/cli.py" or "print" not in plain, name
 
 
 @pytest.mark.parametrize("path", RULES, ids=lambda path: path.stem)
