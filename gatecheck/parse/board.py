@@ -6,7 +6,7 @@ are left where they are. Lengths are millimetres and angles degrees, as in the f
 
 from __future__ import annotations
 
-from dataclasses import dataclass, field
+from dataclasses import dataclass, field, replace
 from typing import TYPE_CHECKING, Any
 
 from gatecheck.parse.document import Document, Malformed, Span
@@ -23,7 +23,7 @@ if TYPE_CHECKING:
 # name is a fourth column; before, items use the user's name.
 _CANONICAL_LAYERS = 20200922
 # From this one on there are no net codes, and a pad's function carries the pad number (`G_1`).
-_NETS_BY_NAME = 20251028
+NETS_BY_NAME = 20251028
 _LAST_COPPER = 31  # layer number of the bottom copper up to v8
 _RESAVE = "open the board in its editor and save it again"
 
@@ -75,12 +75,22 @@ class FootprintForm:
 
 
 @dataclass(frozen=True, slots=True)
+class StackForm:
+    """The board's total thickness, and its layers from top to bottom as (name, is copper, thickness)."""
+
+    thickness_mm: float | None = None
+    layers: tuple[tuple[str, bool, float], ...] = ()
+
+
+@dataclass(frozen=True, slots=True)
 class BoardFile:
     """A board; `troubles` are the forms that could not be read, each with its place."""
 
     document: Document
     version: int
     layers: Mapping[str, str]  # name used in the file -> canonical name, copper only
+    nets: Mapping[str, str]  # net code -> name; empty where nets go by name
+    stack: StackForm
     footprints: tuple[FootprintForm, ...]
     troubles: tuple[InputError, ...]
 
@@ -93,14 +103,19 @@ def read_board(document: Document) -> BoardFile:
             returned as a trouble, and the rest is read.
     """
     troubles: list[InputError] = []
-    version, layers, nets, footprints = 0, _Layers(), {}, []
+    version, layers, nets, footprints, stack = 0, _Layers(), {}, [], StackForm()
     # The order of sections is not promised, and parts need all the others.
-    for head, span in (*document.named("version", "layers", "net"), *document.named("footprint", "module")):
+    named = document.named("version", "general", "layers", "setup", "net")
+    for head, span in (*named, *document.named("footprint", "module")):
         try:
             if head == "version":
                 version = whole(document.read(span))
             elif head == "layers":
                 layers = _layers(document.read(span), version)
+            elif head == "general":
+                stack = replace(stack, thickness_mm=_thickness(document.read(span)))
+            elif head == "setup":
+                stack = replace(stack, layers=_stackup(document, span))
             elif head == "net":
                 node = document.read(span)
                 nets[text(node)] = text(node, 2) if len(node) > 2 else text(node)  # noqa: PLR2004 (code, name)
@@ -110,7 +125,7 @@ def read_board(document: Document) -> BoardFile:
             troubles.append(document.error(span.start + bad.offset, bad.message, _RESAVE))
     if not footprints and not troubles:
         raise document.error(document.root.start, "an empty board: there is no footprint in it", "name another file")
-    return BoardFile(document, version, layers.canonical, tuple(footprints), tuple(troubles))
+    return BoardFile(document, version, layers.canonical, nets, stack, tuple(footprints), tuple(troubles))
 
 
 @dataclass(slots=True)
@@ -132,6 +147,23 @@ def _layers(node: Node, version: int) -> _Layers:
         elif version < _CANONICAL_LAYERS and code.isdecimal() and int(code) <= _LAST_COPPER:
             found[name] = {0: "F.Cu", _LAST_COPPER: "B.Cu"}.get(int(code), f"In{int(code)}.Cu")
     return _Layers(found)
+
+
+def _thickness(general: Node) -> float | None:
+    form = general.form("thickness")
+    return number(form) if form is not None else None
+
+
+def _stackup(document: Document, setup: Span) -> tuple[tuple[str, bool, float], ...]:
+    """Layers with a thickness, top to bottom. A dielectric of several sheets repeats its thickness: the sum."""
+    rows = []
+    for child in document.children(setup):
+        if document.head_of(child.start) == "stackup":
+            for layer in document.read(child).forms("layer"):
+                thickness_mm = sum(number(form) for form in layer.forms("thickness"))
+                kind = layer.form("type")
+                rows.append((text(layer), kind is not None and text(kind) == "copper", thickness_mm))
+    return tuple(rows)
 
 
 @dataclass(slots=True)
@@ -251,7 +283,7 @@ class _Footprint:
         x_mm, y_mm, angle_deg = said.get("at", (0.0, 0.0, 0.0))
         width_mm, height_mm = said.get("size", (0.0, 0.0))
         function: str = said.get("pinfunction", "")
-        if self.version >= _NETS_BY_NAME and words[0] and function.endswith(f"_{words[0]}"):
+        if self.version >= NETS_BY_NAME and words[0] and function.endswith(f"_{words[0]}"):
             function = function[: -len(words[0]) - 1]
         return PadForm(
             number=words[0],
@@ -275,7 +307,7 @@ class _Footprint:
         """`(net 3 "HS_GATE")` up to v9; `(net "HS_GATE")` after, where a net may well be called "3"."""
         if len(words) > 1:
             return words[1]
-        return words[0] if self.version >= _NETS_BY_NAME or not self.nets else self.nets.get(words[0], "")
+        return words[0] if self.version >= NETS_BY_NAME or not self.nets else self.nets.get(words[0], "")
 
 
 def _drill_offset(node: Node) -> tuple[float, ...]:

@@ -96,6 +96,16 @@ class Document:
                 if head in heads:
                     yield head, Span(start, end + 1, 1)
 
+    def enclosing(self, offsets: list[int]) -> list[tuple[int, Span]]:
+        """The top-level form around each offset, each form once, with the index of its first offset."""
+        opens, closes = self.spans.opens[1], self.spans.closes[1]
+        rows = np.searchsorted(opens, np.array(offsets, dtype=opens.dtype), side="right") - 1
+        found: dict[int, int] = {}
+        for i, row in enumerate(rows.tolist()):
+            if row >= 0:
+                found.setdefault(row, i)
+        return [(i, Span(int(opens[row]), int(closes[row]) + 1, 1)) for row, i in found.items()]
+
     def _likely(self, opens: NDArray[np.int32], heads: tuple[str, ...]) -> NDArray[np.bool_]:
         """Which forms have a keyword that begins like one of these."""
         raw = np.frombuffer(self.data, dtype=np.uint8)
