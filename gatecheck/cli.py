@@ -53,6 +53,7 @@ def main(arguments: Sequence[str] | None = None) -> int:
 
 def _guarded(options: argparse.Namespace) -> int:
     from gatecheck.errors import GatecheckError, InputError, UsageError  # noqa: PLC0415 (after --help)
+    from gatecheck.settings import SettingsError  # noqa: PLC0415 (the same)
 
     try:
         code: int = options.run(options)
@@ -61,6 +62,10 @@ def _guarded(options: argparse.Namespace) -> int:
     except InputError as why:
         _complain(why.message, why.next_step, why.excerpt, _place(why.path, why.line, why.column))
         return UNREADABLE
+    except SettingsError as why:
+        for wrong in why.mistakes:
+            _complain(wrong.message, wrong.next_step, wrong.excerpt, _place(wrong.path, wrong.line, wrong.column))
+        return USAGE
     except UsageError as why:
         _complain(str(why), why.next_step)
         return USAGE
@@ -114,8 +119,7 @@ def _parser() -> argparse.ArgumentParser:
     shared.add_argument(
         "--block-at",
         choices=("note", "warning", "error"),
-        default="error",
-        help="level that makes the exit code 1",
+        help="level that makes the exit code 1 (default: what the project file says, else error)",
     )
     shared.add_argument("-q", "--quiet", action="store_true", help="only what fails; nothing when all is well")
     shared.add_argument("--color", choices=("auto", "always", "never"), default="auto", help="NO_COLOR is honoured too")
@@ -140,9 +144,10 @@ def _parser() -> argparse.ArgumentParser:
 
 
 def _review(options: argparse.Namespace) -> int:
-    from gatecheck.review import review  # noqa: PLC0415 (after --help)
+    from gatecheck.finding import Level  # noqa: PLC0415 (after --help)
+    from gatecheck.review import review  # noqa: PLC0415 (the same)
 
-    report = review(options.paths)
+    report = review(options.paths, block_at=Level(options.block_at) if options.block_at else None)
     if options.format == "json":
         from gatecheck.report.to_json import report_json  # noqa: PLC0415 (only what is asked for)
 
@@ -151,7 +156,7 @@ def _review(options: argparse.Namespace) -> int:
         from gatecheck.report.to_terminal import report_text  # noqa: PLC0415 (the same)
 
         _write(options, report_text(report, color=_colored(options), quiet=options.quiet))
-    return _outcome(report, options)
+    return _outcome(report)
 
 
 def _gates(options: argparse.Namespace) -> int:
@@ -166,7 +171,7 @@ def _gates(options: argparse.Namespace) -> int:
         from gatecheck.report.to_terminal import gates_text  # noqa: PLC0415 (the same)
 
         _write(options, gates_text(report, color=_colored(options)))
-    return _outcome(report, options)
+    return _outcome(report)
 
 
 def _nets(options: argparse.Namespace) -> int:
@@ -214,14 +219,12 @@ def _write(options: argparse.Namespace, text: str) -> None:
     write_text(options.output, text)
 
 
-def _outcome(report: Report, options: argparse.Namespace) -> int:
-    from gatecheck.finding import Level  # noqa: PLC0415 (after --help)
-
+def _outcome(report: Report) -> int:
     for entry in report.unread:
         _complain_unread(entry)
     if report.unread or not report.inputs:
         return UNREADABLE
-    return FINDINGS if report.blocks(Level(options.block_at)) else OK
+    return FINDINGS if report.blocked else OK
 
 
 def _complain_unread(entry: Unread) -> None:

@@ -5,9 +5,11 @@ from __future__ import annotations
 from dataclasses import dataclass
 from typing import TYPE_CHECKING
 
-from gatecheck.finding import WEAK_ORIGINS, Finding, Level, Verdict, at_least
+from gatecheck.finding import WEAK_ORIGINS, Finding, Level, Quantity, Verdict
 
 if TYPE_CHECKING:
+    from collections.abc import Mapping
+
     from gatecheck.networks.find import Networks
 
 
@@ -43,17 +45,26 @@ class InputFile:
 
 
 @dataclass(frozen=True, slots=True)
+class Reviewed:
+    """One design: its networks, and the quantities of each gate by its transistor's part and unit."""
+
+    networks: Networks
+    quantities: Mapping[tuple[str, str | None], Mapping[str, Quantity]]
+
+
+@dataclass(frozen=True, slots=True)
 class Report:
     """All a review found out, ready to be written in any format.
 
-    `networks` holds one entry per design that was read, in the order of `inputs`.
+    `blocked` says that a fail reached the blocking level of its project or of the command line.
     """
 
     inputs: tuple[InputFile, ...]
-    networks: tuple[Networks, ...]
+    designs: tuple[Reviewed, ...]
     findings: tuple[Finding, ...]
     not_judged: tuple[NotJudged, ...]
     unread: tuple[Unread, ...]
+    blocked: bool = False
 
     def count(self, verdict: Verdict, *, level: Level | None = None, weak: bool | None = None) -> int:
         """How many findings have this verdict, of one level, or resting on weak origins or not."""
@@ -63,7 +74,3 @@ class Report:
             and (weak is None or (finding.rests_on in WEAK_ORIGINS) is weak)
             for finding in self.findings
         )
-
-    def blocks(self, level: Level) -> bool:
-        """Does any fail reach the blocking level?"""
-        return any(f.verdict is Verdict.FAIL and at_least(f.level, level) for f in self.findings)

@@ -23,17 +23,20 @@ from gatecheck.finding import (
     fingerprint,
     least_trusted,
 )
+from gatecheck.quantities import Quantities
 
 if TYPE_CHECKING:
-    from collections.abc import Callable, Iterable, Iterator, Mapping
+    from collections.abc import Callable, Iterable, Iterator, Mapping, Sequence
 
+    from gatecheck.copper.chain import Chains
     from gatecheck.design.model import Part
-    from gatecheck.networks.circuit import Circuit
     from gatecheck.networks.find import Networks
     from gatecheck.networks.model import EdgePaths, GateNetwork, Switch
+    from gatecheck.settings import Settings
 
 __all__ = [
     "Ask",
+    "Bound",
     "Design",
     "Finding",
     "Gate",
@@ -44,9 +47,60 @@ __all__ = [
     "Rule",
     "Say",
     "Verdict",
+    "least_trusted",
 ]
 
 EDGES = ("on", "off")
+
+
+@dataclass(frozen=True, slots=True)
+class Bound:
+    """A limit of a quantity with the level of a fail that breaks it; at most `maximum` or at least `minimum`."""
+
+    level: Level
+    origin: Origin
+    source: str
+    maximum: float | None = None
+    minimum: float | None = None
+
+    def broken_by(self, value: Quantity) -> bool:
+        """Does the whole interval lie outside?"""
+        if self.maximum is not None:
+            return value.low > self.maximum
+        return self.minimum is not None and value.high < self.minimum
+
+    def kept_by(self, value: Quantity) -> bool:
+        """Does the whole interval lie inside?"""
+        if self.maximum is not None:
+            return value.high <= self.maximum
+        return self.minimum is None or value.low >= self.minimum
+
+    def limit(self, unit: str) -> Limit:
+        """The bound as a finding shows it."""
+        return Limit(unit, self.source, minimum=self.minimum, maximum=self.maximum)
+
+
+def judged(value: Quantity, bounds: Sequence[Bound]) -> tuple[Verdict, Bound]:
+    """The verdict of an interval against bounds from gravest to mildest, and the bound that decided.
+
+    Broken whole: fail. Kept whole by the mildest: pass. Else undecided.
+    """
+    for bound in bounds:
+        if bound.broken_by(value):
+            return Verdict.FAIL, bound
+    mildest = bounds[-1]
+    if mildest.kept_by(value):
+        return Verdict.PASS, mildest
+    return Verdict.UNDECIDED, next(bound for bound in bounds if not bound.kept_by(value))
+
+
+def remembered(note: float, warning: float) -> tuple[Bound, Bound]:
+    """Upper limits of common practice: a fail beyond the first is a note, beyond the second a warning."""
+    source = "common practice"
+    return (
+        Bound(Level.WARNING, Origin.CATALOGUE, source, maximum=warning),
+        Bound(Level.NOTE, Origin.CATALOGUE, source, maximum=note),
+    )
 
 
 @dataclass(frozen=True, slots=True)
@@ -87,8 +141,8 @@ class Rule:
 class Gate:
     """One switching gate as rules see it."""
 
-    def __init__(self, design: Design, network: GateNetwork, switch: Switch) -> None:
-        self._design, self.network, self.switch = design, network, switch
+    def __init__(self, design: Design, network: GateNetwork, switch: Switch, quantities: Quantities) -> None:
+        self._design, self.network, self.switch, self.quantities = design, network, switch, quantities
 
     @property
     def name(self) -> str:
@@ -131,6 +185,25 @@ class Gate:
         """The ways of one edge, `on` or `off`."""
         return self.network.edge(name)
 
+    @property
+    def place_mm(self) -> tuple[float, float]:
+        """Where the gate pad is on the board; zero without a board."""
+        pad = next((pad for pin in self.network.transistor.gate for pad in pin.pads), None)
+        return (round(pad.x_m * 1e3, 1), round(pad.y_m * 1e3, 1)) if pad is not None else (0.0, 0.0)
+
+    def reference_of(self, part: str) -> str:
+        """What a part of this gate is called in the design."""
+        return self._design.part(part).reference or part
+
+    @property
+    def technology(self) -> str:
+        """si, sic, gan or igbt; plain silicon where nothing tells."""
+        return self.switch.technology or "si"
+
+    def quantity(self, name: str) -> Quantity | None:
+        """A quantity by its published name; None where it cannot be had."""
+        return self.quantities.get(name)
+
     @cached_property
     def kin(self) -> tuple[object, ...]:
         """What like gates share: the transistor's value and package, and its side of the bridge."""
@@ -146,15 +219,23 @@ class Gate:
 class Design:
     """The gates of one design, and what rules may know of its parts."""
 
-    def __init__(self, networks: Networks, spot: Callable[[str], Spot]) -> None:
-        self._networks, self._spot = networks, spot
+    def __init__(
+        self, networks: Networks, spot: Callable[[str], Spot], settings: Settings, chains: Chains | None = None
+    ) -> None:
+        self._networks, self._spot, self.settings = networks, spot, settings
         switches = {switch.transistor.key: switch for switch in networks.switches}
-        self.gates = tuple(Gate(self, network, switches[network.transistor.key]) for network in networks.gates)
+        gates = []
+        for network in networks.gates:
+            switch = switches[network.transistor.key]
+            quantities = Quantities(network, switch.technology, networks.circuit, chains, settings)
+            gates.append(Gate(self, network, switch, quantities))
+        self.gates = tuple(gates)
 
-    @property
-    def circuit(self) -> Circuit:
-        """The circuit the gates are part of."""
-        return self._networks.circuit
+    def own_word(self, minimum: float | None = None, maximum: float | None = None) -> tuple[Bound, ...]:
+        """A limit that the project file states; none where it states nothing."""
+        if minimum is None and maximum is None:
+            return ()
+        return (Bound(Level.ERROR, Origin.PROJECT, self.settings.path, maximum=maximum, minimum=minimum),)
 
     def part(self, key: str) -> Part:
         """A part by its id."""

@@ -18,12 +18,13 @@ from shapely.ops import unary_union
 
 from tests.sample_maker.check import CopperFault, check
 from tests.sample_maker.copper import Piece, arc_points, pad_shape, pieces, polygons
+from tests.sample_maker.faults import BEAD_FAR, BEAD_MISSING, BEAD_ONE_EDGE, BEAD_UNDERRATED, RETURN_DETOUR
 from tests.sample_maker.fill import CLEARANCE_MM, Fill, fill_zones, ring_shape, slit_ring
 from tests.sample_maker.half_bridge import HALF_BRIDGE
-from tests.sample_maker.logic import LOGIC
 from tests.sample_maker.routes import copper
-from tests.sample_maker.samples import sample_files
+from tests.sample_maker.samples import CIRCUITS, WITH_NETLIST, sample_files
 from tests.sample_maker.sexpr_text import Word, board_text
+from tests.sample_maker.three_phase import THREE_PHASE
 from tests.sample_maker.tile import benchmark_board, tile_board
 from tests.sample_maker.write_board import board
 
@@ -32,7 +33,6 @@ if TYPE_CHECKING:
     from tests.sample_maker.sexpr_text import Node
 
 SAMPLES = Path(__file__).resolve().parent.parent / "sample_boards"
-BOTH = [HALF_BRIDGE, LOGIC]
 _FILL = re.compile(r"\t\t\(filled_polygon\n.*?\n\t\t\)\n", re.DOTALL)
 _SEGMENT = re.compile(r"\(segment\n\t\t\(start (\S+) (\S+)\)\n\t\t\(end (\S+) (\S+)\)")
 _XY = re.compile(r"\(xy (\S+) (\S+)\)")
@@ -77,7 +77,7 @@ def test_committed_files_are_what_the_maker_writes(made: dict[str, str]) -> None
         assert _zone_areas(stored[name]) == pytest.approx(_zone_areas(text), rel=1e-3), name
 
 
-@pytest.mark.parametrize("circuit", BOTH, ids=lambda c: c.name)
+@pytest.mark.parametrize("circuit", CIRCUITS, ids=lambda c: c.name)
 def test_every_net_is_one_piece_and_keeps_its_distance(circuit: Circuit) -> None:
     found, fills = _copper(circuit)
     check(circuit, found, fills)
@@ -102,6 +102,51 @@ def test_the_board_has_what_readers_must_cope_with(made: dict[str, str]) -> None
     assert made["logic/logic.kicad_pcb"].count('(pad "2" smd roundrect\n\t\t\t(at -3.15 0 270)') == 2
 
 
+def test_the_three_legs_are_one_sheet_shown_three_times(made: dict[str, str]) -> None:
+    # format notes: a path is the sheet's identifier and the symbol's, in the netlist in two lists
+    paths = re.findall(r'"Q[123]01".*?\(path "/(\S+)/(\S+)"\)', made["three_phase/three_phase.kicad_pcb"], re.DOTALL)
+    assert [len(set(column)) for column in zip(*paths, strict=True)] == [3, 1]
+    for letter, (sheet, symbol) in zip("ABC", paths, strict=True):
+        lists = f'(names "/Leg {letter}/") (tstamps "/{sheet}/"))\n      (tstamps "{symbol}")'
+        assert lists in made["three_phase/three_phase.net"]
+
+
+# --- the planted faults -------------------------------------------------------------------------------
+
+
+@pytest.mark.parametrize(
+    ("healthy", "faulty", "touched"),
+    [
+        (THREE_PHASE, BEAD_MISSING, {"FB202", "R204", "R205"}),
+        (HALF_BRIDGE, BEAD_FAR, {"R4", "D3", "R5", "FB2"}),
+        (HALF_BRIDGE, RETURN_DETOUR, set()),
+        (HALF_BRIDGE, BEAD_UNDERRATED, {"FB1", "FB2"}),
+        (HALF_BRIDGE, BEAD_ONE_EDGE, {"R2"}),
+    ],
+    ids=lambda value: getattr(value, "name", ""),
+)
+def test_a_fault_touches_its_own_parts_only(healthy: Circuit, faulty: Circuit, touched: set[str]) -> None:
+    assert {part.ref for part in {*healthy.parts} ^ {*faulty.parts}} == touched
+
+
+def test_a_long_track_leads_from_the_far_bead_to_its_gate() -> None:
+    pads = [piece.shape for piece in _copper(BEAD_FAR)[0] if piece.what in {"pad FB2.2", "pad Q2.1"}]
+    way = [LineString([t.start_mm, t.end_mm]) for t in copper(BEAD_FAR)[0] if (t.net, t.width_mm) == ("/GATE_L", 0.8)]
+    assert unary_union(way).difference(unary_union(pads)).length == pytest.approx(20, abs=1.5)
+
+
+def test_the_detour_is_the_only_return_and_none_lies_below_the_gates_track() -> None:
+    found, fills = _copper(RETURN_DETOUR)
+    nets = {RETURN_DETOUR.net_names[pin] for pin in (("U1", "10"), ("R4", "2"), ("R5", "2"), ("Q2", "1"))}
+    drive = [p.shape for p in found if p.net in nets]
+    below = [fill.shape for fill in fills if (fill.zone.net, fill.zone.layer) == ("GND", "B.Cu")]
+    assert unary_union(below).distance(unary_union(drive)) > 1.0
+    at = {piece.what: piece.shape.centroid for piece in found}
+    there, back = [at[f"pad {pad}"] for pad in ("U1.10", "Q2.1", "Q2.3")], [(137, 110.4), (115.475, 110.4)]
+    assert Polygon([*there, *back, at["pad U1.8"]]).area > 300
+    _refuses(RETURN_DETOUR.rerouted(away=("0.8 F U1.8 ,110.4 137,",), instead=()), "net GND is in pieces")
+
+
 # --- second opinions ----------------------------------------------------------------------------------
 
 
@@ -116,7 +161,7 @@ def _expected_pads(circuit: Circuit) -> list[tuple[str, list[tuple[str, str | No
     ]
 
 
-@pytest.mark.parametrize("circuit", BOTH, ids=lambda c: c.name)
+@pytest.mark.parametrize("circuit", CIRCUITS, ids=lambda c: c.name)
 def test_kiutils_reads_the_same_board(circuit: Circuit) -> None:
     # kiutils (a general reader, up to v9) shares no code with this repository
     from kiutils.board import Board
@@ -136,7 +181,7 @@ def test_kiutils_reads_the_same_board(circuit: Circuit) -> None:
 
 
 @pytest.mark.filterwarnings("ignore::DeprecationWarning")  # kinparse calls its parser library by old names
-@pytest.mark.parametrize("circuit", BOTH, ids=lambda c: c.name)
+@pytest.mark.parametrize("circuit", WITH_NETLIST, ids=lambda c: c.name)
 def test_kinparse_reads_the_same_netlist(circuit: Circuit) -> None:
     # kinparse is an independent netlist reader
     from kinparse import parse_netlist
@@ -193,18 +238,17 @@ def test_a_bead_can_be_moved_with_its_tracks() -> None:
 
 
 def test_a_bead_can_be_taken_out() -> None:
-    bare = HALF_BRIDGE.without("FB1").changed("R3", nets=("*jointH", "/PHASE"))
-    bare = bare.changed("Q1", nets=("*jointH", "+48V", "/PHASE")).changed("TP1", nets=("*jointH",))
-    routes = (*bare.routes, "0.8 F R2.1 Q1.1", "0.6 F R1.2 128.4, R2.1")
-    text = board(replace(bare, routes=routes))
+    bare = HALF_BRIDGE.without("FB1").joined("/GATE_H", into="*jointH")
+    text = board(bare.rerouted(away=(), instead=("0.8 F R2.1 Q1.1", "0.6 F R1.2 128.4, R2.1")))
     assert '"FB1"' not in text
     assert "/GATE_H" not in text
 
 
 def test_a_missing_track_is_refused() -> None:
-    routes = tuple(route for route in HALF_BRIDGE.routes if route != "0.8 F FB1.2 Q1.1")
-    assert len(routes) == len(HALF_BRIDGE.routes) - 1
-    _refuses(replace(HALF_BRIDGE, routes=routes), "net /GATE_H is in pieces")
+    bare = HALF_BRIDGE.rerouted(away=("0.8 F FB1.2 Q1.1",), instead=())
+    _refuses(bare, "net /GATE_H is in pieces")
+    with pytest.raises(ValueError, match="no such routes"):
+        bare.rerouted(away=("0.8 F FB1.2 Q1.1",), instead=())
 
 
 def test_a_track_across_another_net_is_refused() -> None:

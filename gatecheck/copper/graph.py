@@ -18,7 +18,7 @@ from gatecheck.copper.geometry import clip_to_box, crosses_rim, crossing_paramet
 from gatecheck.copper.model import pad_layers, pad_outline, to_pad
 
 if TYPE_CHECKING:
-    from collections.abc import Iterable, Mapping
+    from collections.abc import Iterable
 
     import networkx as nx
     from numpy.typing import NDArray
@@ -60,6 +60,7 @@ class CopperGraph:
         self.graph: nx.Graph[Node] = nx.Graph()
         self.pads = tuple(pads)
         self._copper, self._stack = copper, stack
+        self.held: dict[int, list[Node]] = {}  # the nodes inside each fill, by its index
         self._pieces = _pieces(copper)
         self.too_large = len(self._pieces) + len(copper.vias) > MAX_PIECES
         if self.too_large:
@@ -73,21 +74,30 @@ class CopperGraph:
         self._add_pad_contacts()
         self._add_fills()
 
-    def _join(
-        self,
-        one: Node,
-        two: Node,
-        length_m: float,
-        *,
-        certain: bool = True,
-        in_pads: Mapping[Node, float] | None = None,
-    ) -> None:
-        """Keep the shortest edge. `in_pads` says how much of it lies inside each pad at its ends: all by default."""
+    def _join(self, one: Node, two: Node, length_m: float, *, fill: int | None = None) -> None:
+        """Keep the shortest edge. `fill` names the fill that a straight way runs through."""
         known = self.graph.get_edge_data(one, two)
         if known is None or known["length_m"] > length_m:
-            if in_pads is None:
-                in_pads = {node: length_m for node in (one, two) if node[0] == "pad"}
-            self.graph.add_edge(one, two, length_m=max(length_m, 0.0), certain=certain, in_pads=in_pads)
+            self.graph.add_edge(one, two, length_m=max(length_m, 0.0), fill=fill)
+
+    def inside_m(self, pad: Node, other: Node) -> float:
+        """How much of an edge from a pad's centre lies inside the pad: all of it where a track or via touches."""
+        edge = self.graph.edges[pad, other]
+        if edge["fill"] is None and other[0] != "pad":
+            return float(edge["length_m"])
+        here, there = np.array(self.place(pad)[:2]), np.array(self.place(other)[:2])
+        form = self.pads[pad[1]]
+        a, b = to_pad(np.stack([here, there]), form)
+        part = clip_to_box(a, b, np.array([form.width_m, form.height_m]) / 2)
+        return (part[1] if part else 0.0) * float(np.hypot(*(there - here)))
+
+    def leaves_fill(self, one: Node, two: Node) -> bool:
+        """Does an edge through a fill leave it on its straight way? Then the way round is longer."""
+        fill = self.graph.edges[one, two]["fill"]
+        if fill is None:
+            return False
+        a, b = np.array(self.place(one)[:2]), np.array(self.place(two)[:2])
+        return crosses_rim(a, b, self._copper.fills[fill].outline)
 
     def place(self, node: Node) -> tuple[float, float, str]:
         """Where a node is: x, y, and the layer (empty for pads, which may be on several)."""
@@ -148,8 +158,10 @@ class CopperGraph:
                 if not len(near):
                     continue
                 at, gap = project(centre, self._pieces.starts[near], self._pieces.ends[near])
-                for k in np.flatnonzero(gap <= self._pieces.half_m[near] + via.diameter_m / 2):
-                    links.append((("via", i, layer), self._station(int(near[k]), float(at[k])), float(gap[k])))
+                links += [
+                    (("via", i, layer), self._station(int(near[k]), float(at[k])), float(gap[k]))
+                    for k in np.flatnonzero(gap <= self._pieces.half_m[near] + via.diameter_m / 2)
+                ]
         return links
 
     def _touching_pads(self) -> list[tuple[Node, Node, float]]:
@@ -189,23 +201,23 @@ class CopperGraph:
         """Vias in pads, and pads of one net on each other."""
         outlines = [pad_outline(pad) for pad in self.pads]
         layers = [set(pad_layers(pad, self._stack)) for pad in self.pads]
-        for i, outline in enumerate(outlines):
-            for k, via in enumerate(self._copper.vias):
-                centre = np.array([[via.x_m, via.y_m]])
-                shared = layers[i] & set(via.layers)
-                if shared and inside(centre, outline)[0]:
-                    offset = float(np.hypot(*(centre[0] - (self.pads[i].x_m, self.pads[i].y_m))))
-                    for layer in shared:
-                        self._join(("pad", i, ""), ("via", k, layer), offset)
-            for j in range(i):
-                apart = np.hypot(self.pads[i].x_m - self.pads[j].x_m, self.pads[i].y_m - self.pads[j].y_m)
-                reach = np.hypot(*np.ptp(outline, axis=0)) / 2 + np.hypot(*np.ptp(outlines[j], axis=0)) / 2
-                if layers[i] & layers[j] and apart <= reach and distance_between(outline, outlines[j]) <= _TOUCH_M:
-                    self._join(("pad", i, ""), ("pad", j, ""), float(apart))
+        centres = np.array([(via.x_m, via.y_m) for via in self._copper.vias]).reshape(-1, 2)
+        reaches = np.array([np.hypot(*np.ptp(outline, axis=0)) / 2 for outline in outlines])
+        places = np.array([(pad.x_m, pad.y_m) for pad in self.pads]).reshape(-1, 2)
+        for i, pad in enumerate(self.pads):
+            offsets = to_pad(centres, pad)
+            held = (np.abs(offsets) <= np.array([pad.width_m, pad.height_m]) / 2).all(axis=1)
+            for k in np.flatnonzero(held).tolist():
+                for layer in layers[i] & set(self._copper.vias[k].layers):
+                    self._join(("pad", i, ""), ("via", k, layer), float(np.hypot(*offsets[k])))
+            apart = np.hypot(*(places[:i] - places[i]).T)
+            for j in np.flatnonzero(apart <= reaches[:i] + reaches[i]).tolist():
+                if layers[i] & layers[j] and distance_between(outlines[i], outlines[j]) <= _TOUCH_M:
+                    self._join(("pad", i, ""), ("pad", j, ""), float(apart[j]))
 
     def _add_fills(self) -> None:
-        """Everything a fill holds is joined by straight ways; one that leaves the fill on its way is uncertain."""
-        for fill in self._copper.fills:
+        """Everything a fill holds is joined by straight ways."""
+        for index, fill in enumerate(self._copper.fills):
             nodes = self._fill_candidates(fill)
             if len(nodes) < 2:  # noqa: PLR2004 (one node is joined to nothing)
                 continue
@@ -214,7 +226,8 @@ class CopperGraph:
             for k in np.flatnonzero(~held).tolist():
                 held[k] = self._reaches(nodes[k], points[k], fill)
             chosen = np.flatnonzero(held)
-            self._join_in_fill([nodes[k] for k in chosen], points[chosen], fill.outline)
+            self.held[index] = [nodes[k] for k in chosen]
+            self._join_in_fill(self.held[index], points[chosen], index)
 
     def _fill_candidates(self, fill: Fill) -> list[Node]:
         """The nodes on the fill's layer that are near enough to touch it."""
@@ -245,7 +258,7 @@ class CopperGraph:
         gap = project(point, fill.outline, np.roll(fill.outline, -1, axis=0))[1].min()
         return bool(gap <= radius + fill.spread_m)
 
-    def _join_in_fill(self, nodes: list[Node], points: Points, outline: Points) -> None:
+    def _join_in_fill(self, nodes: list[Node], points: Points, fill: int) -> None:
         pairs: set[tuple[int, int]] = set()
         many = len(nodes) > _ALL_PAIRS
         for i, node in enumerate(nodes):
@@ -254,18 +267,8 @@ class CopperGraph:
             pairs |= {(min(i, k), max(i, k)) for k in {*near.tolist(), *pads} if k != i}
         pairs |= set(_spanning(points)) if many else set()
         for i, k in sorted(pairs):
-            certain = not crosses_rim(points[i], points[k], outline)
-            ends = ((nodes[i], points[i], points[k]), (nodes[k], points[k], points[i]))
-            in_pads = {end: self._in_pad(end, here, there) for end, here, there in ends if end[0] == "pad"}
             length_m = float(np.hypot(*(points[i] - points[k])))
-            self._join(nodes[i], nodes[k], length_m, certain=certain, in_pads=in_pads)
-
-    def _in_pad(self, node: Node, here: Points, there: Points) -> float:
-        """How much of a line from a pad's centre lies inside the pad."""
-        pad = self.pads[node[1]]
-        a, b = to_pad(np.stack([here, there]), pad)
-        part = clip_to_box(a, b, np.array([pad.width_m, pad.height_m]) / 2)
-        return (part[1] if part else 0.0) * float(np.hypot(*(there - here)))
+            self._join(nodes[i], nodes[k], length_m, fill=fill)
 
 
 def _spanning(points: Points) -> list[tuple[int, int]]:

@@ -15,6 +15,7 @@ from typing import TYPE_CHECKING
 import numpy as np
 
 from gatecheck.copper.geometry import enclosed_area, inside, project
+from gatecheck.copper.model import pad_layers
 from gatecheck.copper.path import NoWay
 
 if TYPE_CHECKING:
@@ -24,7 +25,6 @@ if TYPE_CHECKING:
 
     from gatecheck.copper.chain import Chain, Chains
     from gatecheck.copper.geometry import Points
-    from gatecheck.copper.model import NetCopper
     from gatecheck.design.model import Pad
     from gatecheck.networks.model import Drive, GateNetwork
 
@@ -51,17 +51,47 @@ class GateLoop:
 
 
 @dataclass(frozen=True, slots=True)
-class _Sampled:
-    """The way there cut into short pieces: corner points, and for each piece the gap to its return.
+class _Gaps:
+    """For each piece of the way there, the gap to its return (nan where there is none) and the fill it is in.
 
-    `next_m` is the height over return copper on the next layer, `any_m` the gap to any return copper near by;
-    nan where there is none.
+    `fills` holds indices into `names`, pairs of net and fill; -1 where there is none.
+    """
+
+    metres: NDArray[np.float64]
+    fills: NDArray[np.int64]
+
+    @classmethod
+    def none(cls, count: int) -> _Gaps:
+        """No return anywhere."""
+        return cls(np.full(count, np.nan), np.full(count, -1, dtype=np.int64))
+
+    def take(self, at: NDArray[np.int64], metres: NDArray[np.float64] | float, fill: int) -> None:
+        """Keep the nearer return."""
+        nearer = np.isnan(self.metres[at]) | (metres < np.nan_to_num(self.metres[at], nan=np.inf))
+        self.metres[at] = np.where(nearer, metres, self.metres[at])
+        self.fills[at] = np.where(nearer, fill, self.fills[at])
+
+
+@dataclass(frozen=True, slots=True)
+class _Sampled:
+    """The way there cut into short pieces.
+
+    `next_layer` are the gaps to return copper on the next layer, `any_near` to any return copper near by.
     """
 
     corners: Points
     lengths_m: NDArray[np.float64]
-    next_m: NDArray[np.float64]
-    any_m: NDArray[np.float64]
+    next_layer: _Gaps
+    any_near: _Gaps
+    names: tuple[tuple[str, int], ...]
+
+
+@dataclass(frozen=True, slots=True)
+class _Ends:
+    """The pads at which the loop closes: the source's and the driver's reference, each with its net."""
+
+    source: tuple[str, tuple[Pad, ...]]
+    home: tuple[str, tuple[Pad, ...]]
 
 
 def gate_loop(chains: Chains, network: GateNetwork, edge: str) -> GateLoop | NoWay:
@@ -70,20 +100,21 @@ def gate_loop(chains: Chains, network: GateNetwork, edge: str) -> GateLoop | NoW
     if isinstance(forward, NoWay):
         return forward
     drive = next(d for d in network.drives if d.edge in (edge, "both"))
-    reference = chains.reference(network, drive)
-    if reference is None:
+    home = chains.reference(network, drive)
+    if home is None:
         return NoWay("no pin of the driver is on the source's net")
     transistor = network.transistor
-    nets = {transistor.kelvin_net or transistor.source_net, reference[0]} - {""}
-    sampled = _sample(chains, forward, nets)
-    coverage = float(sampled.lengths_m[~np.isnan(sampled.next_m)].sum() / max(sampled.lengths_m.sum(), _STEP_M))
-    source = _nearest((pad for pin in transistor.kelvin or transistor.source for pad in pin.pads), sampled.corners[-1])
-    home = _nearest(reference[1], sampled.corners[0])
-    least = _over_return(sampled, sampled.any_m, source, home)
+    own = transistor.kelvin_net or transistor.source_net
+    pads = tuple(pad for pin in transistor.kelvin or transistor.source if pin.net == own for pad in pin.pads)
+    ends = _Ends((own, pads), home)
+    sampled = _sample(chains, forward, dict.fromkeys((own, home[0])))
+    covered = ~np.isnan(sampled.next_layer.metres)
+    coverage = float(sampled.lengths_m[covered].sum() / max(sampled.lengths_m.sum(), _STEP_M))
     if coverage > 0:
-        nominal = high = _over_return(sampled, sampled.next_m, source, home)
+        nominal = high = _over_return(chains, sampled, sampled.next_layer, ends)
     else:
-        nominal, high = _closed(chains, network, drive, np.vstack([sampled.corners, source, home]), least)
+        nominal, high = _closed(chains, network, drive, sampled, ends)
+    least = _over_return(chains, sampled, sampled.any_near, ends)
     return GateLoop((min(least, nominal), nominal, high), coverage, forward)
 
 
@@ -94,55 +125,59 @@ def _nearest(pads: Iterable[Pad], point: Points) -> Points:
     return nearest
 
 
-def _closed(chains: Chains, network: GateNetwork, drive: Drive, straight: Points, least: float) -> tuple[float, float]:
+def _closed(chains: Chains, network: GateNetwork, drive: Drive, sampled: _Sampled, ends: _Ends) -> tuple[float, float]:
     """Nominal and highest area of a way without return copper on the next layer.
 
     Closed by the way back over copper; where there is none in the file, by a straight wire at most.
     """
     back = chains.back(network, drive)
     if isinstance(back, NoWay):
-        area = enclosed_area(straight)
-        return (least + area) / 2, area
+        source, home = _nearest(ends.source[1], sampled.corners[-1]), _nearest(ends.home[1], sampled.corners[0])
+        area = enclosed_area(np.vstack([sampled.corners, source, home]))
+        return area / 2, area
     way = np.array([point[:2] for point in back.points()])
-    area = enclosed_area(np.vstack([straight[:-2], way]))
+    area = enclosed_area(np.vstack([sampled.corners, way]))
     return area, area
 
 
-def _sample(chains: Chains, forward: Chain, nets: set[str]) -> _Sampled:
+def _sample(chains: Chains, forward: Chain, nets: Iterable[str]) -> _Sampled:
     """Cut the way there into pieces and look for return copper under and beside each."""
     corners, layers = _corners(chains, forward)
     lengths = np.hypot(*np.diff(corners, axis=0).T)
     middles = (corners[1:] + corners[:-1]) / 2
-    next_m, any_m = np.full(len(middles), np.nan), np.full(len(middles), np.nan)
+    sampled = _Sampled(
+        corners,
+        lengths,
+        _Gaps.none(len(middles)),
+        _Gaps.none(len(middles)),
+        tuple((net, i) for net in nets for i in range(len(chains.copper.source.net(net).fills))),
+    )
     stack = chains.copper.source.stack
-    copper = [chains.copper.source.net(net) for net in sorted(nets)]
-    for layer in sorted(set(layers)):
-        mine = np.flatnonzero(np.array([name == layer for name in layers]))
-        for fill in (fill for one in copper for fill in one.fills):
-            height = stack.height_m(layer, fill.layer)
-            under = mine[inside(middles[mine], fill.outline)] if height > 0 else mine[:0]
-            any_m[under] = np.fmin(any_m[under], height)
+    for key, (net, i) in enumerate(sampled.names):
+        fill = chains.copper.source.net(net).fills[i]
+        for layer in sorted(set(layers)):
+            mine = np.flatnonzero(np.array([name == layer for name in layers]))
+            height_m = stack.height_m(layer, fill.layer)
+            under = mine[inside(middles[mine], fill.outline)] if height_m > 0 else mine[:0]
+            sampled.any_near.take(under, height_m, key)
             if fill.layer in stack.neighbours(layer):
-                next_m[under] = np.fmin(next_m[under], height)
-    _look_beside(middles, any_m, copper)
-    return _Sampled(corners, lengths, next_m, any_m)
+                sampled.next_layer.take(under, height_m, key)
+    for key, (net, i) in enumerate(sampled.names):
+        _look_beside(middles, sampled.any_near, chains.copper.source.net(net).fills[i].outline, key)
+    return sampled
 
 
-def _look_beside(middles: Points, any_m: NDArray[np.float64], copper: list[NetCopper]) -> None:
-    """Fill in the gap to tracks and edges of fills of the return net, seen from above."""
-    lines = [(fill.outline, np.roll(fill.outline, -1, axis=0)) for one in copper for fill in one.fills]
-    lines += [(track.points[:-1], track.points[1:]) for one in copper for track in one.tracks]
-    if not lines:
-        return
-    starts, ends = np.vstack([a for a, _ in lines]), np.vstack([b for _, b in lines])
+def _look_beside(middles: Points, gaps: _Gaps, outline: Points, key: int) -> None:
+    """Where nothing is under the way, take the gap to the edge of a fill beside it, seen from above."""
+    starts, ends = outline, np.roll(outline, -1, axis=0)
     low, high = middles.min(axis=0) - _BESIDE_M, middles.max(axis=0) + _BESIDE_M
     near = (np.maximum(starts, ends) >= low).all(axis=1) & (np.minimum(starts, ends) <= high).all(axis=1)
     if not near.any():
         return
-    for i in np.flatnonzero(np.isnan(any_m)).tolist():
-        gap = float(project(middles[i], starts[near], ends[near])[1].min())
-        if gap <= _BESIDE_M:
-            any_m[i] = gap
+    for i in np.flatnonzero(np.isnan(gaps.metres)).tolist():
+        gap_m = float(project(middles[i], starts[near], ends[near])[1].min())
+        if gap_m <= _BESIDE_M:
+            gaps.take(np.array([i]), gap_m, key)
 
 
 def _corners(chains: Chains, forward: Chain) -> tuple[Points, list[str]]:
@@ -164,20 +199,53 @@ def _corners(chains: Chains, forward: Chain) -> tuple[Points, list[str]]:
     return np.array(corners), layers
 
 
-def _over_return(sampled: _Sampled, gaps_m: NDArray[np.float64], source: Points, home: Points) -> float:
-    """Strips along return copper, and polygons where there is none, each closed by a straight line."""
-    covered = ~np.isnan(gaps_m)
-    area = float((sampled.lengths_m[covered] * gaps_m[covered]).sum())
+def _over_return(chains: Chains, sampled: _Sampled, gaps: _Gaps, ends: _Ends) -> float:
+    """Strips along return copper, and polygons where there is none.
+
+    A polygon between two strips closes straight, through the copper they lie on. At both ends of the way the
+    current runs along real copper between the pin and the fill that carries it.
+    """
+    covered = ~np.isnan(gaps.metres)
+    area = float((sampled.lengths_m[covered] * gaps.metres[covered]).sum())
+    home = _to_fill(chains, sampled, gaps, ends.home, first=True)
+    source = _to_fill(chains, sampled, gaps, ends.source, first=False)
     edges = np.flatnonzero(np.diff(covered.astype(int)))
-    for first, last in pairwise([0, *(edges + 1).tolist(), len(covered)]):
-        if covered[first]:
+    for begin, end in pairwise([0, *(edges + 1).tolist(), len(covered)]):
+        if covered[begin]:
             continue
-        ends = [home[None]] if first == 0 else []
-        tail = [source[None]] if last == len(covered) else []
-        area += enclosed_area(np.vstack([*ends, sampled.corners[first : last + 1], *tail]))
-    # Where an end is covered, what is left is the corner between the pin and the return pin beside it.
+        before = [home] if begin == 0 else []
+        after = [source] if end == len(covered) else []
+        area += enclosed_area(np.vstack([*before, sampled.corners[begin : end + 1], *after]))
+    # Where an end is covered, what is left is the corner between the pin and the way into the fill beside it.
     if covered[0]:
         area += enclosed_area(np.vstack([home, sampled.corners[:2]]))
     if covered[-1]:
         area += enclosed_area(np.vstack([sampled.corners[-2:], source]))
     return area
+
+
+def _to_fill(
+    chains: Chains, sampled: _Sampled, gaps: _Gaps, end: tuple[str, tuple[Pad, ...]], *, first: bool
+) -> Points:
+    """The way between a pin and the fill at its end of the strips, in the order of the polygon it closes."""
+    net, pads = end
+    pin = _nearest(pads, sampled.corners[0 if first else -1])
+    used = gaps.fills[gaps.fills >= 0]
+    if not len(used):
+        return pin[None]
+    owner, index = sampled.names[int(used[0 if first else -1])]
+    fill = chains.copper.source.net(owner).fills[index]
+    if owner != net or any(
+        fill.layer in pad_layers(pad, chains.copper.source.stack) and inside(_centre(pad)[None], fill.outline)[0]
+        for pad in pads
+    ):
+        return pin[None]
+    way = chains.copper.way_into_fill(net, pads, index)
+    if way is None:
+        return pin[None]
+    points = np.array([point[:2] for point in way.points])
+    return points[::-1] if first else points
+
+
+def _centre(pad: Pad) -> Points:
+    return np.array([pad.x_m, pad.y_m])

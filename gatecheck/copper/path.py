@@ -65,9 +65,7 @@ class Copper:
         graph = self.graph(net)
         if graph.too_large:
             return NoWay(f"the copper of {net} has too many pieces to follow")
-        ends = {pad.offset: ("pad", i, "") for i, pad in enumerate(graph.pads)}
-        starts = {ends[pad.offset] for pad in start if pad.offset in ends}
-        goals = {ends[pad.offset] for pad in goal if pad.offset in ends}
+        starts, goals = _nodes(graph, start), _nodes(graph, goal)
         if not starts or not goals:
             return NoWay(f"a pad is not on {net}")
         found = _shortest(graph, starts, goals)
@@ -77,32 +75,43 @@ class Copper:
             return NoWay(f"a zone of {net} is not filled in the file")
         return NoWay(f"{net} is not routed between the two pads")
 
+    def way_into_fill(self, net: str, start: Sequence[Pad], fill: int) -> CopperWay | None:
+        """The shortest way from some pads to where their net's copper enters a fill; None if it does not."""
+        graph = self.graph(net)
+        if graph.too_large:
+            return None
+        return _shortest(graph, _nodes(graph, start), set(graph.held.get(fill, ())))
+
+
+def _nodes(graph: CopperGraph, pads: Sequence[Pad]) -> set[Node]:
+    ends: dict[int, Node] = {pad.offset: ("pad", i, "") for i, pad in enumerate(graph.pads)}
+    return {ends[pad.offset] for pad in pads if pad.offset in ends}
+
 
 def _shortest(graph: CopperGraph, starts: set[Node], goals: set[Node]) -> CopperWay | None:
     import networkx as nx  # noqa: PLC0415 (already loaded by the graph)
 
-    free = starts | goals
-    present = [node for node in starts if node in graph.graph]
+    free = {node for node in starts | goals if node[0] == "pad"}
 
     def cost(one: Node, two: Node, edge: Mapping[str, Any]) -> float:
         """Inside the two pads a way costs nothing: the distance is from edge to edge."""
-        inside = sum(edge["in_pads"].get(node, 0.0) for node in (one, two) if node in free)
-        return max(float(edge["length_m"] - inside), 0.0)
+        inside = sum(graph.inside_m(a, b) for a, b in ((one, two), (two, one)) if a in free)
+        return max(float(edge["length_m"]) - inside, 0.0)
 
     if starts & goals:
         node = min(starts & goals)
         return CopperWay((0.0, 0.0), (graph.place(node),), 0)
-    if not present:
+    present = [node for node in sorted(starts) if node in graph.graph]
+    if not present or not goals:
         return None
     lengths, ways = nx.multi_source_dijkstra(graph.graph, present, weight=cost)
     reached = [node for node in goals if node in lengths]
     if not reached:
         return None
-    goal = min(reached, key=lambda node: (lengths[node], node[1]))
-    way = ways[goal]
+    way = ways[min(reached, key=lambda node: (lengths[node], node[0], node[1]))]
     edges = [(a, b, graph.graph.edges[a, b]) for a, b in pairwise(way)]
     low = sum(cost(*edge) for edge in edges)
-    unsure = sum(cost(*edge) for edge in edges if not edge[2]["certain"])
+    unsure = sum(cost(*edge) for edge in edges if graph.leaves_fill(edge[0], edge[1]))
     vias = len({node[1] for a, b in pairwise(way) for node in (a, b) if a[0] == b[0] == "via"})
     return CopperWay((low, low + (_DETOUR - 1) * unsure), tuple(map(graph.place, way)), vias)
 

@@ -64,10 +64,12 @@ class EdgePaths:
 
     `steps` runs from driver to gate, each part once, over the ways that carry most of the current: where a
     diode branch bypasses a resistor, the diode branch. `ways` are all of them, way by way. `covering` are the
-    parts that every conducting way passes: a bead among them damps this edge whole.
+    parts that every conducting way passes: a bead among them damps this edge whole. `elements` are the parts
+    and net ties of all conducting ways, between their nets.
     """
 
     steps: tuple[Step, ...]
+    elements: tuple[Step, ...]
     ways: tuple[tuple[str, ...], ...]
     covering: frozenset[str]
     conducts: bool

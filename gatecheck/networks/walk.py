@@ -239,7 +239,12 @@ def _edge(edge: str, drives: Iterable[Drive], ways: dict[str, list[_Way]]) -> Ed
     ordered = tuple(steps[part] for part in sorted(steps, key=lambda part: position[part]))
     passed = [frozenset(hop.element.part for hop in way) for way in conducting]
     all_ways = tuple(dict.fromkeys(tuple(hop.element.part for hop in _hops(way)) for way in conducting or mine))
-    return EdgePaths(ordered, all_ways, frozenset.intersection(*passed) if passed else frozenset(), bool(conducting))
+    elements = tuple(
+        dict.fromkeys(Step(h.element.part, h.element.sort, h.outer, h.inner) for way in conducting for h in way)
+    )
+    return EdgePaths(
+        ordered, elements, all_ways, frozenset.intersection(*passed) if passed else frozenset(), bool(conducting)
+    )
 
 
 def _hops(way: _Way) -> list[_Hop]:

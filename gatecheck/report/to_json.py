@@ -14,7 +14,7 @@ if TYPE_CHECKING:
     from gatecheck.finding import Finding, Limit, Quantity, Spot
     from gatecheck.networks.find import Networks
     from gatecheck.networks.model import GateNetwork, Switch
-    from gatecheck.report_model import Report
+    from gatecheck.report_model import Report, Reviewed
     from gatecheck.rulekit import Rule
 
 _Key = tuple[str, "str | None"]
@@ -28,8 +28,8 @@ def report_json(report: Report) -> str:
             "tool": {"name": "gatecheck", "version": __version__},
             "cautions": list(CAUTIONS),
             "inputs": [{"path": i.path, "kind": i.kind, "sha256": i.sha256} for i in report.inputs],
-            "transistors": [entry for n in report.networks for entry in _transistors(n)],
-            "gates": [entry for n in report.networks for entry in _gates(n)],
+            "transistors": [entry for d in report.designs for entry in _transistors(d.networks)],
+            "gates": [entry for d in report.designs for entry in _gates(d)],
             "findings": [_finding(finding) for finding in report.findings],
             "not_judged": [
                 {"rule": n.rule, "subject": n.subject, "reason": n.reason, "needs": n.needs} for n in report.not_judged
@@ -112,12 +112,13 @@ def _transistor(networks: Networks, switch: Switch) -> dict[str, Any]:
     }
 
 
-def _gates(networks: Networks) -> list[dict[str, Any]]:
-    return [_gate(networks, gate) for gate in networks.gates]
+def _gates(design: Reviewed) -> list[dict[str, Any]]:
+    return [_gate(design, gate) for gate in design.networks.gates]
 
 
-def _gate(networks: Networks, gate: GateNetwork) -> dict[str, Any]:
-    transistor = gate.transistor
+def _gate(design: Reviewed, gate: GateNetwork) -> dict[str, Any]:
+    networks, transistor = design.networks, gate.transistor
+    quantities = design.quantities.get(transistor.key, {})
     return {
         "id": _id(networks, transistor.key),
         "switch": _reference(networks, transistor.part),
@@ -140,7 +141,7 @@ def _gate(networks: Networks, gate: GateNetwork) -> dict[str, Any]:
         "clamps": _references(networks, gate.clamps),
         "parallel_with": _references(networks, (key[0] for key in gate.parallel_with)),
         "alternates": _references(networks, (key[0] for key in gate.alternates)),
-        "quantities": {},
+        "quantities": {name: _quantity(value) for name, value in quantities.items()},
     }
 
 

@@ -17,7 +17,7 @@ from gatecheck.report.wording import SHORT_CAUTION, counted, safe, summary
 if TYPE_CHECKING:
     from collections.abc import Iterable, Mapping
 
-    from gatecheck.finding import Finding, Spot
+    from gatecheck.finding import Finding, Limit, Quantity, Spot
     from gatecheck.networks.find import Networks
     from gatecheck.report_model import Report
     from gatecheck.rulekit import Rule
@@ -41,8 +41,8 @@ def report_text(report: Report, *, color: bool, quiet: bool) -> str:
         lines = [line for finding in _worst_first(acting) for line in _finding(finding)]
         return _rendered(lines, color=color)
     lines = []
-    for networks in report.networks:
-        lines += _networks(networks)
+    for design in report.designs:
+        lines += _networks(design.networks)
     for finding in _worst_first(acting):
         lines += _finding(finding)
     if acting:
@@ -63,7 +63,7 @@ def report_text(report: Report, *, color: bool, quiet: bool) -> str:
 def gates_text(report: Report, *, color: bool) -> str:
     """The gate networks and every transistor's role with its evidence."""
     lines: list[_Line] = []
-    for networks in report.networks:
+    for networks in (design.networks for design in report.designs):
         lines += _networks(networks)
         for switch in networks.switches:
             name = safe(name_of(switch.transistor.key))
@@ -151,6 +151,8 @@ def _finding(finding: Finding) -> list[_Line]:
         ]
     ]
     pad = " " * 28
+    if finding.value is not None and finding.limit is not None:
+        lines.append([(f"{pad}{_measure(finding.value, finding.limit)}", "")])
     if finding.verdict is Verdict.FAIL:
         lines += [[(pad + _place(place), "dim")] for place in finding.places[:_MAX_PLACES]]
     if finding.ask:
@@ -162,6 +164,14 @@ def _finding(finding: Finding) -> list[_Line]:
     if finding.advice:
         lines.append([(f"{pad}{finding.advice}", "")])
     return lines
+
+
+def _measure(value: Quantity, limit: Limit) -> str:
+    """`12.6 mm, at most 5 mm (common practice)`; an interval as `12 to 19 mm`."""
+    unit = "" if value.unit == "1" else f" {value.unit}"
+    span = f"{value.low:.3g}" if value.low == value.high else f"{value.low:.3g} to {value.high:.3g}"
+    word, bound = ("at most", limit.maximum) if limit.maximum is not None else ("at least", limit.minimum)
+    return f"{span}{unit}, {word} {bound:g}{unit} ({safe(limit.origin)})"
 
 
 def _place(place: Spot) -> str:

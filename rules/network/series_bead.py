@@ -17,23 +17,21 @@ if TYPE_CHECKING:
 
 
 def _check(design: Design) -> Iterator[Say]:
+    policy = design.settings.bead_policy
     with_bead = {gate.kin for gate in design.gates if _covered(gate) == list(EDGES)}
     for network in by_network(design.gates).values():
         for gate in network:
             covered = _covered(gate)
-            if covered == list(EDGES):
-                yield Say(
-                    gate,
-                    Verdict.PASS,
-                    "a bead in its own branch, on both edges",
-                    rests_on=Origin.VALUE,
-                    parts=gate.beads,
-                )
-            elif covered:
-                bare = next(edge for edge in EDGES if edge not in covered)
-                yield _one_edge(gate, bare)
+            if policy == "never":
+                yield _banned(gate) if gate.beads else Say(gate, Verdict.PASS, "no bead, as the project asks")
+            elif covered == list(EDGES):
+                yield _fitted(gate)
+            elif gate.beads and covered:
+                yield _one_edge(gate, next(edge for edge in EDGES if edge not in covered))
+            elif policy == "always":
+                yield _lacking(gate, "no bead in its own branch, which the project asks of every gate", Origin.PROJECT)
             elif gate.kin in with_bead:
-                yield _odd_one(gate)
+                yield _lacking(gate, "no bead in its own branch, while like gates here have one", Origin.VALUE)
             elif gate is network[0]:
                 yield _unknown(gate, len(network))
 
@@ -57,15 +55,34 @@ def _one_edge(gate: Gate, bare: str) -> Say:
     )
 
 
-def _odd_one(gate: Gate) -> Say:
+def _fitted(gate: Gate) -> Say:
+    message = "a bead in its own branch, on both edges"
+    return Say(gate, Verdict.PASS, message, rests_on=Origin.VALUE, parts=gate.beads)
+
+
+def _lacking(gate: Gate, message: str, origin: Origin) -> Say:
     return Say(
         gate,
         Verdict.FAIL,
-        "no bead in its own branch, while like gates of this design have one",
-        level=Level.WARNING,
-        rests_on=Origin.VALUE,
+        message,
+        level=Level.ERROR if origin is Origin.PROJECT else Level.WARNING,
+        rests_on=origin,
         parts=gate.gate_resistors,
-        advice="fit the bead that the like gates have, between gate resistor and gate",
+        advice="fit a bead between gate resistor and gate, as at the like gates"
+        if origin is Origin.VALUE
+        else "fit a bead between gate resistor and gate",
+    )
+
+
+def _banned(gate: Gate) -> Say:
+    return Say(
+        gate,
+        Verdict.FAIL,
+        "a bead in series, which the project does not want",
+        level=Level.ERROR,
+        rests_on=Origin.PROJECT,
+        parts=gate.beads,
+        advice="replace the bead by a link of 0 ohm",
     )
 
 
@@ -91,7 +108,10 @@ RULE = Rule(
         "parts in each gate's own branch damp."
     ),
     quantity="parts that every conducting way of an edge passes",
-    limits=("policy when-needed: a gate without a bead fails only where like gates have one; our choice",),
+    limits=(
+        "bead_policy when-needed: a gate without a bead fails only where like gates have one; our choice",
+        "gatecheck.yaml: bead_policy always or never; breaking it is an error",
+    ),
     sources=("common practice",),
     check=_check,
 )

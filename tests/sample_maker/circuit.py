@@ -24,10 +24,24 @@ _NAMESPACE = uuid.uuid5(uuid.NAMESPACE_URL, "urn:alder-weir:sample-boards")
 
 
 @dataclass(frozen=True, slots=True)
+class Sheet:
+    """A sheet below the schematic's root; several may show the same file, each with its own name."""
+
+    name: str
+    file: str
+
+
+def human_path(sheet: Sheet | None) -> str:
+    """The sheet as people read it, between slashes; None is the root."""
+    return f"/{sheet.name}/" if sheet else "/"
+
+
+@dataclass(frozen=True, slots=True)
 class Part:
     """One component. `nets` follow the symbol's pins; None leaves a pin open.
 
     A net that starts with `*` is named after its pins, as nets without a label are in board files.
+    `drawn_as` is the reference in the sheet's file; a part without a sheet stands on the root.
     """
 
     ref: str
@@ -40,6 +54,8 @@ class Part:
     fields: tuple[tuple[str, str], ...] = ()
     description: str = ""
     fitted: bool = True
+    sheet: Sheet | None = None
+    drawn_as: str = ""
 
     @property
     def footprint(self) -> Footprint:
@@ -95,7 +111,10 @@ class Zone:
 
 @dataclass(frozen=True)
 class Circuit:
-    """A whole board: parts, routes in the notation of `routes.py`, stitching vias, pours, outline."""
+    """A whole board: parts, routes in the notation of `routes.py`, stitching vias, pours, outline.
+
+    `base` names the board that a variant was made from: both come from one schematic and share identifiers.
+    """
 
     name: str
     title: str
@@ -106,6 +125,21 @@ class Circuit:
     stitches: Mapping[str, tuple[Point, ...]]
     zones: tuple[Zone, ...]
     notes: tuple[tuple[str, Point], ...] = field(default=())
+    base: str = ""
+
+    @property
+    def root_file(self) -> str:
+        """The file of the schematic's root sheet."""
+        return f"{self.base or self.name}.kicad_sch"
+
+    @property
+    def sheets(self) -> list[Sheet]:
+        """The sheets below the root, in the order of their parts."""
+        return list(dict.fromkeys(part.sheet for part in self.parts if part.sheet))
+
+    def variant(self, name: str) -> Circuit:
+        """The same board under another name."""
+        return replace(self, name=name, base=self.base or self.name)
 
     def part(self, ref: str) -> Part:
         """The part with that reference."""
@@ -131,9 +165,32 @@ class Circuit:
         routes = tuple(route for route in self.routes if not any(word.startswith(f"{ref}.") for word in route.split()))
         return replace(self, parts=parts, routes=routes)
 
+    def rerouted(self, away: tuple[str, ...], instead: tuple[str, ...]) -> Circuit:
+        """The same board with some routes exchanged for others.
+
+        Raises:
+            ValueError: a route to take away is not there.
+        """
+        if missing := set(away) - set(self.routes):
+            raise ValueError(f"no such routes: {sorted(missing)}")
+        return replace(self, routes=(*(route for route in self.routes if route not in away), *instead))
+
+    def joined(self, net: str, into: str) -> Circuit:
+        """The same board with one net made part of another."""
+        parts = (replace(part, nets=tuple(into if key == net else key for key in part.nets)) for part in self.parts)
+        return replace(self, parts=tuple(parts))
+
     def identifier(self, *path: object) -> str:
         """A universally unique identifier that depends on the design and the path only."""
-        return str(uuid.uuid5(_NAMESPACE, "/".join([self.name, *map(str, path)])))
+        return str(uuid.uuid5(_NAMESPACE, "/".join([self.base or self.name, *map(str, path)])))
+
+    def sheet_path(self, sheet: Sheet | None) -> str:
+        """The identifiers of the sheets down to this one, a slash around each."""
+        return f"/{self.identifier('sheet', sheet.name)}/" if sheet else "/"
+
+    def symbol_identifier(self, part: Part) -> str:
+        """The symbol's identifier: parts drawn once on a sheet that is shown several times have the same."""
+        return self.identifier("symbol", *([part.sheet.file, part.drawn_as] if part.sheet else [part.ref]))
 
     def net_of(self, part: Part, pin: Pin) -> str:
         """The final name of the net on a pin."""

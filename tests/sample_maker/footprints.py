@@ -208,6 +208,7 @@ _ALL = (
     _row("PinHeader_1x04_P2.54mm", "Pin header, 4 pins", 4, 2.54, 1.0),
     _row("PinHeader_1x05_P2.54mm", "Pin header, 5 pins", 5, 2.54, 1.0),
     _row("PinHeader_1x06_P2.54mm", "Pin header, 6 pins", 6, 2.54, 1.0),
+    _row("PinHeader_1x10_P2.54mm", "Pin header, 10 pins", 10, 2.54, 1.0),
     _row("TerminalBlock_1x02_P5.08mm", "Screw terminals, 2 poles", 2, 5.08, 1.3),
     _row("TerminalBlock_1x03_P5.08mm", "Screw terminals, 3 poles", 3, 5.08, 1.3),
     _small_outline("SOIC-14", 14, 2.475, (1.95, 0.6), (3.9, 8.65)),

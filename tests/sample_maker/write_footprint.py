@@ -5,6 +5,7 @@ from __future__ import annotations
 from dataclasses import dataclass
 from typing import TYPE_CHECKING
 
+from .circuit import human_path
 from .sexpr_text import NO, YES, Node, Word
 from .symbols import LIBRARY
 
@@ -58,9 +59,9 @@ def footprint_node(circuit: Circuit, part: Part, dialect: Dialect) -> Node:
         ("descr", footprint.description),
         ("tags", footprint.name.split("_")[0].lower()),
         *_properties(circuit, part),
-        ("path", f"/{circuit.identifier('symbol', part.ref)}"),
-        ("sheetname", "/"),
-        ("sheetfile", f"{circuit.name}.kicad_sch"),
+        ("path", circuit.sheet_path(part.sheet) + circuit.symbol_identifier(part)),
+        ("sheetname", human_path(part.sheet)),
+        ("sheetfile", part.sheet.file if part.sheet else circuit.root_file),
         *_units(part, dialect),
         ("attr", *map(Word, flags)),
         *_drawings(circuit, part),

@@ -4,6 +4,7 @@ from __future__ import annotations
 
 from typing import TYPE_CHECKING
 
+from .circuit import human_path
 from .sexpr_text import Node, atom_text, head_text, inline_text
 from .symbols import LIBRARY
 from .write_board import COMPANY, DATE, GENERATOR
@@ -12,7 +13,7 @@ from .write_footprint import pin_type
 if TYPE_CHECKING:
     from collections.abc import Iterator
 
-    from .circuit import Circuit, Part
+    from .circuit import Circuit, Part, Sheet
     from .symbols import Pin
 
 # Lists that netlist files keep on one line.
@@ -67,26 +68,25 @@ def _lines(node: Node, indent: str) -> list[str]:
 
 
 def _design(circuit: Circuit) -> Node:
-    source = f"{circuit.name}.kicad_sch"
+    shown = (_sheet(circuit, number, sheet) for number, sheet in enumerate([None, *circuit.sheets], start=1))
+    return ("design", ("source", circuit.root_file), ("date", DATE), ("tool", GENERATOR), *shown)
+
+
+def _sheet(circuit: Circuit, number: int, sheet: Sheet | None) -> Node:
+    """One sheet with its title block; None is the root."""
     return (
-        "design",
-        ("source", source),
-        ("date", DATE),
-        ("tool", GENERATOR),
+        "sheet",
+        ("number", str(number)),
+        ("name", human_path(sheet)),
+        ("tstamps", circuit.sheet_path(sheet)),
         (
-            "sheet",
-            ("number", "1"),
-            ("name", "/"),
-            ("tstamps", "/"),
-            (
-                "title_block",
-                ("title", circuit.title),
-                ("company", COMPANY),
-                ("rev", "A"),
-                ("date", DATE),
-                ("source", source),
-                ("comment", ("number", "1"), ("value", "Sample for software tests, not for manufacture")),
-            ),
+            "title_block",
+            ("title", circuit.title),
+            ("company", COMPANY),
+            ("rev", "A"),
+            ("date", DATE),
+            ("source", sheet.file if sheet else circuit.root_file),
+            ("comment", ("number", "1"), ("value", "Sample for software tests, not for manufacture")),
         ),
     )
 
@@ -105,11 +105,11 @@ def _component(circuit: Circuit, part: Part) -> Node:
         ("fields", *(_field(name, text) for name, text in fields)),
         ("libsource", ("lib", LIBRARY), ("part", part.symbol.name), ("description", part.symbol.description)),
         *(("property", ("name", name), ("value", text)) for name, text in part.fields),
-        ("property", ("name", "Sheetname"), ("value", "Root")),
-        ("property", ("name", "Sheetfile"), ("value", f"{circuit.name}.kicad_sch")),
+        ("property", ("name", "Sheetname"), ("value", part.sheet.name if part.sheet else "Root")),
+        ("property", ("name", "Sheetfile"), ("value", part.sheet.file if part.sheet else circuit.root_file)),
         *flags,
-        ("sheetpath", ("names", "/"), ("tstamps", "/")),
-        ("tstamps", circuit.identifier("symbol", part.ref)),
+        ("sheetpath", ("names", human_path(part.sheet)), ("tstamps", circuit.sheet_path(part.sheet))),
+        ("tstamps", circuit.symbol_identifier(part)),
     )
 
 

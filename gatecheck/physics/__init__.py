@@ -1,0 +1,1 @@
+"""Pure functions of SI numbers: no parts, no files, no printing."""
