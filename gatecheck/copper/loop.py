@@ -202,26 +202,35 @@ def _corners(chains: Chains, forward: Chain) -> tuple[Points, list[str]]:
 def _over_return(chains: Chains, sampled: _Sampled, gaps: _Gaps, ends: _Ends) -> float:
     """Strips along return copper, and polygons where there is none.
 
-    A polygon between two strips closes straight, through the copper they lie on. At both ends of the way the
-    current runs along real copper between the pin and the fill that carries it.
+    A polygon between two strips on one fill closes straight, through that fill; on two fills it closes along
+    the copper that joins them. At both ends of the way the current runs along real copper between the pin and
+    the fill that carries it.
     """
     covered = ~np.isnan(gaps.metres)
     area = float((sampled.lengths_m[covered] * gaps.metres[covered]).sum())
     home = _to_fill(chains, sampled, gaps, ends.home, first=True)
     source = _to_fill(chains, sampled, gaps, ends.source, first=False)
-    edges = np.flatnonzero(np.diff(covered.astype(int)))
-    for begin, end in pairwise([0, *(edges + 1).tolist(), len(covered)]):
-        if covered[begin]:
-            continue
-        before = [home] if begin == 0 else []
-        after = [source] if end == len(covered) else []
-        area += enclosed_area(np.vstack([*before, sampled.corners[begin : end + 1], *after]))
-    # Where an end is covered, what is left is the corner between the pin and the way into the fill beside it.
-    if covered[0]:
-        area += enclosed_area(np.vstack([home, sampled.corners[:2]]))
-    if covered[-1]:
-        area += enclosed_area(np.vstack([sampled.corners[-2:], source]))
+    where = np.flatnonzero(covered)
+    if not len(where):
+        return enclosed_area(np.vstack([home, sampled.corners, source]))
+    first, last = int(where[0]), int(where[-1])
+    area += enclosed_area(np.vstack([home, sampled.corners[: max(first, 1) + 1]]))
+    area += enclosed_area(np.vstack([sampled.corners[min(last + 1, len(covered) - 1) :], source]))
+    for before, after in pairwise(where.tolist()):
+        between = _between_fills(chains, sampled, int(gaps.fills[before]), int(gaps.fills[after]))
+        if after > before + 1 or len(between):
+            area += enclosed_area(np.vstack([sampled.corners[before + 1 : after + 1], between]))
     return area
+
+
+def _between_fills(chains: Chains, sampled: _Sampled, before: int, after: int) -> Points:
+    """The way back from one fill to the one before; no points where both are one, or nothing joins them."""
+    nothing = np.zeros((0, 2))
+    (net, start), (other, goal) = sampled.names[after], sampled.names[before]
+    if before == after or net != other:
+        return nothing
+    way = chains.copper.way_between_fills(net, start, goal)
+    return np.array([point[:2] for point in way.points]) if way is not None else nothing
 
 
 def _to_fill(

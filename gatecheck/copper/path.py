@@ -3,8 +3,9 @@
 from __future__ import annotations
 
 from dataclasses import dataclass
+from heapq import heappop, heappush
 from itertools import pairwise
-from typing import TYPE_CHECKING, Any
+from typing import TYPE_CHECKING
 
 import numpy as np
 
@@ -13,7 +14,7 @@ from gatecheck.copper.graph import CopperGraph
 from gatecheck.copper.model import pad_outline
 
 if TYPE_CHECKING:
-    from collections.abc import Iterable, Mapping, Sequence
+    from collections.abc import Iterable, Sequence
 
     from gatecheck.copper.graph import Node
     from gatecheck.copper.source import CopperSource
@@ -51,6 +52,7 @@ class Copper:
     def __init__(self, design: Design, source: CopperSource) -> None:
         self.design, self.source = design, source
         self._graphs: dict[str, CopperGraph] = {}
+        self._ways: dict[tuple[str, frozenset[Node], frozenset[Node]], CopperWay | None] = {}
 
     def graph(self, net: str) -> CopperGraph:
         """The graph of one net's copper, made when first asked for."""
@@ -68,7 +70,7 @@ class Copper:
         starts, goals = _nodes(graph, start), _nodes(graph, goal)
         if not starts or not goals:
             return NoWay(f"a pad is not on {net}")
-        found = _shortest(graph, starts, goals)
+        found = self._way(net, starts, goals, starts | goals)
         if found is not None:
             return found
         if self.source.net(net).unfilled:
@@ -78,9 +80,20 @@ class Copper:
     def way_into_fill(self, net: str, start: Sequence[Pad], fill: int) -> CopperWay | None:
         """The shortest way from some pads to where their net's copper enters a fill; None if it does not."""
         graph = self.graph(net)
-        if graph.too_large:
-            return None
-        return _shortest(graph, _nodes(graph, start), set(graph.held.get(fill, ())))
+        starts = _nodes(graph, start)
+        return self._way(net, starts, set(graph.held.get(fill, ())), starts)
+
+    def way_between_fills(self, net: str, start: int, goal: int) -> CopperWay | None:
+        """The shortest way along a net's copper from one of its fills to another; None if there is none."""
+        held = self.graph(net).held
+        return self._way(net, set(held.get(start, ())), set(held.get(goal, ())), set())
+
+    def _way(self, net: str, starts: set[Node], goals: set[Node], free: set[Node]) -> CopperWay | None:
+        """Searched once: both edges of a gate, and gates in parallel, ask for the same."""
+        key = net, frozenset(starts), frozenset(goals)
+        if key not in self._ways:
+            self._ways[key] = _shortest(self.graph(net), starts, goals, free)
+        return self._ways[key]
 
 
 def _nodes(graph: CopperGraph, pads: Sequence[Pad]) -> set[Node]:
@@ -88,32 +101,58 @@ def _nodes(graph: CopperGraph, pads: Sequence[Pad]) -> set[Node]:
     return {ends[pad.offset] for pad in pads if pad.offset in ends}
 
 
-def _shortest(graph: CopperGraph, starts: set[Node], goals: set[Node]) -> CopperWay | None:
-    import networkx as nx  # noqa: PLC0415 (already loaded by the graph)
-
-    free = {node for node in starts | goals if node[0] == "pad"}
-
-    def cost(one: Node, two: Node, edge: Mapping[str, Any]) -> float:
-        """Inside the two pads a way costs nothing: the distance is from edge to edge."""
-        inside = sum(graph.inside_m(a, b) for a, b in ((one, two), (two, one)) if a in free)
-        return max(float(edge["length_m"]) - inside, 0.0)
-
+def _shortest(graph: CopperGraph, starts: set[Node], goals: set[Node], free: set[Node]) -> CopperWay | None:
+    """The shortest way from any start to any goal. Inside the `free` pads it costs nothing."""
     if starts & goals:
         node = min(starts & goals)
         return CopperWay((0.0, 0.0), (graph.place(node),), 0)
-    present = [node for node in sorted(starts) if node in graph.graph]
-    if not present or not goals:
+    way = _search(graph, starts, goals, free)
+    if not way:
         return None
-    lengths, ways = nx.multi_source_dijkstra(graph.graph, present, weight=cost)
-    reached = [node for node in goals if node in lengths]
-    if not reached:
-        return None
-    way = ways[min(reached, key=lambda node: (lengths[node], node[0], node[1]))]
-    edges = [(a, b, graph.graph.edges[a, b]) for a, b in pairwise(way)]
-    low = sum(cost(*edge) for edge in edges)
-    unsure = sum(cost(*edge) for edge in edges if graph.leaves_fill(edge[0], edge[1]))
+    lengths = [_cost(graph, a, b, free) for a, b in pairwise(way)]
+    unsure = sum(length for length, (a, b) in zip(lengths, pairwise(way), strict=True) if graph.leaves_fill(a, b))
+    low = sum(lengths)
     vias = len({node[1] for a, b in pairwise(way) for node in (a, b) if a[0] == b[0] == "via"})
     return CopperWay((low, low + (_DETOUR - 1) * unsure), tuple(map(graph.place, way)), vias)
+
+
+def _cost(graph: CopperGraph, one: Node, two: Node, free: set[Node]) -> float:
+    """Length of an edge without what lies inside the free pads at its ends."""
+    length_m = float(graph.graph.edges[one, two]["length_m"])
+    for pad, other in ((one, two), (two, one)):
+        if pad in free:
+            length_m -= graph.inside_m(pad, other)
+    return max(length_m, 0.0)
+
+
+def _search(graph: CopperGraph, starts: set[Node], goals: set[Node], free: set[Node]) -> list[Node]:
+    """Dijkstra's search, ended at the first goal: the library's own neither ends at one of many nor is as fast.
+
+    Returns the nodes from start to goal; none if no goal is reached.
+    """
+    neighbours = graph.graph.adj
+    lengths = {node: 0.0 for node in sorted(starts) if node in neighbours}
+    before: dict[Node, Node] = {}
+    queue = [(0.0, i, node) for i, node in enumerate(lengths)]
+    count = len(queue)
+    done: set[Node] = set()
+    while queue:
+        length_m, _, here = heappop(queue)
+        if here in done:
+            continue
+        done.add(here)
+        if here in goals:
+            way = [here]
+            while way[-1] in before:
+                way.append(before[way[-1]])
+            return way[::-1]
+        for node, edge in neighbours[here].items():
+            step_m = _cost(graph, here, node, free) if here in free or node in free else edge["length_m"]
+            if length_m + step_m < lengths.get(node, np.inf):
+                lengths[node], before[node] = length_m + step_m, here
+                count += 1
+                heappush(queue, (length_m + step_m, count, node))
+    return []
 
 
 def straight_m(start: Iterable[Pad], goal: Iterable[Pad]) -> float:
