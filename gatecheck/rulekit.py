@@ -23,6 +23,7 @@ from gatecheck.finding import (
     fingerprint,
     least_trusted,
 )
+from gatecheck.networks.model import EdgePaths
 from gatecheck.quantities import Quantities
 
 if TYPE_CHECKING:
@@ -31,13 +32,14 @@ if TYPE_CHECKING:
     from gatecheck.copper.chain import Chains
     from gatecheck.design.model import Part
     from gatecheck.networks.find import Networks
-    from gatecheck.networks.model import EdgePaths, GateNetwork, Switch
+    from gatecheck.networks.model import GateNetwork, Switch
     from gatecheck.settings import Settings
 
 __all__ = [
     "Ask",
     "Bound",
     "Design",
+    "EdgePaths",
     "Finding",
     "Gate",
     "Level",

@@ -34,7 +34,7 @@ def _check(design: Design) -> Iterator[Say]:
         elif any(gate.edge(edge).truncated for edge in EDGES):
             yield _open(gate, "more ways lead to this gate than can be followed")
         elif covered:
-            yield _one_edge(gate, next(edge for edge in EDGES if edge not in covered))
+            yield _one_edge(gate, next(edge for edge in EDGES if edge not in covered), asked=policy == "always")
         elif policy == "always":
             yield _lacking(gate, "no bead in its own branch, which the project asks of every gate", Origin.PROJECT)
         elif gate.kin in with_bead:
@@ -53,13 +53,13 @@ def _passes(paths: EdgePaths, beads: set[str]) -> bool:
     return paths.conducts and not paths.truncated and all(beads & set(way) for way in paths.ways)
 
 
-def _one_edge(gate: Gate, bare: str) -> Say:
+def _one_edge(gate: Gate, bare: str, *, asked: bool) -> Say:
     return Say(
         gate,
         Verdict.FAIL,
         f"the bead is bypassed on the turn-{bare} edge",
-        level=Level.WARNING,
-        rests_on=Origin.VALUE,
+        level=Level.ERROR if asked else Level.WARNING,
+        rests_on=Origin.PROJECT if asked else Origin.VALUE,
         parts=gate.beads,
         edge=bare,
         advice="move the bead behind the joint of the two branches, next to the gate",
