@@ -2,8 +2,8 @@
 
 Over copper of the return net on the next layer, the current comes back right under the trace: such a stretch
 counts its length times the dielectric between. Elsewhere the loop is the polygon between the way there and the
-way back. Without any return copper in the file the area is an interval: from a plane right under the trace to
-a straight wire between the two pins.
+way back. Without any return copper in the file the area is an interval: from nothing, since copper may yet
+be drawn right under the trace, to a straight wire between the two pins.
 """
 
 from __future__ import annotations

@@ -4,7 +4,7 @@ from __future__ import annotations
 
 from typing import TYPE_CHECKING
 
-from gatecheck.catalogue.load import pin_is, word_in
+from gatecheck.catalogue.load import pin_is
 from gatecheck.networks.kinds import Sort, bipolar
 from gatecheck.networks.model import OFF, ON, Drive
 from gatecheck.networks.ports import CHIP_PIN, CONNECTOR, NO_DRIVE, OUTPUT, PUSH_PULL, SINGLE_PULL, Port, best_rank
@@ -107,6 +107,6 @@ def local_turn_off(circuit: Circuit, nets: Sequence[str], home: frozenset[str]) 
             if circuit.kinds[pin.part].sort is not Sort.TRANSISTOR or not bipolar(part):
                 continue
             others = {p.net for p in part.pins if pin_is("collector", p.function)}
-            if pin_is("emitter", pin.function) and others & home and not word_in("npn", part.value):
+            if pin_is("emitter", pin.function) and others & home and "npn" not in part.value.lower():
                 found.append(Port(pin, SINGLE_PULL))
     return found

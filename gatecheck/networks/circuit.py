@@ -33,6 +33,8 @@ _LIKELY_RAIL = re.compile(
 )
 # Our choice: more parts than any gate line has, fewer than a supply.
 _RAIL_PARTS = 26
+# A line between two or three parts is no supply, whatever its name. Our choice.
+_LIKELY_PINS = 4
 _LONGEST_NAME = 60
 _SHUNT_HOPS = 2
 
@@ -100,7 +102,7 @@ class Circuit:
             known = _SURE_RAIL.fullmatch(last) is not None
             if not known and net not in self._signals:
                 many = len(self.pins(net)) >= _RAIL_PARTS and len({pin.part for pin in self.pins(net)}) >= _RAIL_PARTS
-                known = many or _LIKELY_RAIL.fullmatch(last) is not None
+                known = many or (len(self.pins(net)) >= _LIKELY_PINS and _LIKELY_RAIL.fullmatch(last) is not None)
             self._rails[net] = known
         return known
 

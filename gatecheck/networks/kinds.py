@@ -118,21 +118,22 @@ def kind_of(part: Part) -> Kinded:
         return Kinded(sort, None, part.fitted)
     value = parse_value(part.value, kind=_VALUE_KIND[sort])
     override = _SORT_OF_VALUE.get(value.kind)
-    if override is not None and sort in (Sort.RESISTOR, Sort.BEAD, Sort.INDUCTOR):
-        sort = override
-    elif sort is Sort.BEAD and "jumper" in value.flags:
+    if sort is Sort.BEAD and "jumper" in value.flags:
         sort = Sort.RESISTOR  # a link in the bead's place: there is no bead
+    elif override is not None and sort in (Sort.RESISTOR, Sort.BEAD, Sort.INDUCTOR):
+        sort = override
     return Kinded(sort, value, part.fitted and value.fitted)
 
 
 def _sort(part: Part) -> Sort:
-    if gated(part.pins) or bipolar(part):
+    letter = _by_letter(part)
+    if letter is not Sort.CONNECTOR and (gated(part.pins) or bipolar(part)):
         return Sort.TRANSISTOR
     if part.net_ties:
         return Sort.NET_TIE
     named = _named(part)
     by_word = next((sort for pattern, sort in _WORDS if pattern.search(named)), None)
-    by_letter = _by_letter(part)
+    by_letter = letter
     if by_word in (Sort.NET_TIE, Sort.JUMPER, Sort.ARRAY, Sort.TEST_POINT, Sort.CONNECTOR) or by_letter in (
         None,
         Sort.CHIP,

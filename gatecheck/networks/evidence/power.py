@@ -63,7 +63,8 @@ def _back_to_back(around: Surroundings, transistor: Transistor) -> Iterator[Foun
         for other in others.get(common, ()):
             drains = bool(tied(transistor.drain_net) & tied(other.drain_net))
             sources = bool(tied(transistor.source_net) & tied(other.source_net))
-            if other.key != transistor.key and drains != sources and not around.partners(other):
+            alike = other.key != transistor.key and around.p_channel(other) == around.p_channel(transistor)
+            if alike and drains != sources and not around.partners(other):
                 yield "back_to_back", {"part": name_of(other.key), "net": common}
                 return
 
