@@ -11,6 +11,7 @@ from typing import TYPE_CHECKING
 import pytest
 
 from gatecheck.registry import load_rules
+from tests.circuits import netlist_text
 from tests.test_hostile import BOARD, NETLIST, SAMPLES, run
 
 if TYPE_CHECKING:
@@ -177,6 +178,86 @@ def test_folder_is_reviewed_project_by_project_each_once() -> None:
 def test_a_netlist_named_alone_is_read_itself() -> None:
     report = json.loads(run("review", NETLIST, "--format", "json")[1])
     assert [entry["kind"] for entry in report["inputs"]] == ["netlist", "settings"]
+
+
+def test_a_project_file_stands_for_the_designs_of_its_folder() -> None:
+    report = json.loads(run("review", SAMPLES / "half_bridge" / "gatecheck.yaml", "--format", "json")[1])
+    assert [entry["kind"] for entry in report["inputs"]] == ["board", "settings"]
+
+
+def test_a_report_is_never_written_over_a_design(tmp_path: Path) -> None:
+    board = tmp_path / "b.kicad_pcb"
+    board.write_bytes(BOARD.read_bytes())
+    code, out, err = run("review", board, "--output", board)
+    assert (code, out, "never written over a design" in err) == (2, "", True)
+    assert board.read_bytes() == BOARD.read_bytes()
+
+
+def test_output_follows_links_and_writes_into_pipes(tmp_path: Path) -> None:
+    target, link = tmp_path / "real.txt", tmp_path / "link.txt"
+    target.write_text("old")
+    link.symlink_to(target)
+    assert run("review", BOARD, "--output", link)[0] == 0
+    assert link.is_symlink()
+    assert "switching gates" in target.read_text()
+
+
+def test_the_same_board_by_three_spellings_is_reviewed_once() -> None:
+    spellings = [BOARD, BOARD.resolve(), BOARD.parent / ".." / BOARD.parent.name / BOARD.name]
+    report = json.loads(run("review", *spellings, "--format", "json")[1])
+    assert [entry["kind"] for entry in report["inputs"]] == ["board", "settings"]
+
+
+@pytest.mark.parametrize("other", ["half_bridge.missing", "half_bridge.txt", "gone.net"])
+def test_a_named_file_is_never_dropped_in_silence(tmp_path: Path, other: str) -> None:
+    board = tmp_path / "half_bridge.kicad_pcb"
+    board.write_bytes(BOARD.read_bytes())
+    (tmp_path / "half_bridge.txt").write_text("no design")
+    assert run("review", board, tmp_path / other)[0] == 3
+    assert run("review", tmp_path / other, board)[0] == 3
+
+
+def test_a_foreign_netlist_in_a_folder_is_no_failure(tmp_path: Path) -> None:
+    (tmp_path / "half_bridge.kicad_pcb").write_bytes(BOARD.read_bytes())
+    (tmp_path / "spice.net").write_text("* source spice\nR1 a b 1\n")
+    code, out, _ = run("review", tmp_path, "--format", "json")
+    assert code == 0
+    assert any("spice.net" in entry["subject"] for entry in json.loads(out)["not_judged"])
+    assert run("review", tmp_path / "spice.net")[0] == 3
+
+
+def test_a_legacy_schematic_beside_a_board_is_a_line_and_alone_an_error(tmp_path: Path) -> None:
+    (tmp_path / "half_bridge.kicad_pcb").write_bytes(BOARD.read_bytes())
+    (tmp_path / "half_bridge.sch").write_text("EESchema Schematic File Version 4\n")
+    code, out, _ = run("review", tmp_path / "half_bridge.kicad_pcb", "--format", "json")
+    assert code == 0
+    assert any("legacy" in entry["reason"] for entry in json.loads(out)["not_judged"])
+    assert run("review", tmp_path / "half_bridge.sch")[0] == 3
+
+
+def test_a_closed_pipe_changes_no_outcome(tmp_path: Path) -> None:
+    path = with_open_bead(tmp_path)
+    script = f"set -o pipefail; {sys.executable} -m gatecheck review {path} --format json | head -c 10"
+    done = subprocess.run(["bash", "-c", script], capture_output=True, check=False)
+    assert done.returncode == 1
+
+
+def test_a_full_disk_is_said() -> None:
+    done = subprocess.run(
+        ["bash", "-c", f"{sys.executable} -m gatecheck review {BOARD} > /dev/full"],
+        capture_output=True,
+        text=True,
+        check=False,
+    )
+    assert (done.returncode, "cannot be written to" in done.stderr) == (2, True)
+
+
+def test_transistors_that_cannot_be_told_are_said(tmp_path: Path) -> None:
+    path = tmp_path / "unclear.net"
+    path.write_text(netlist_text("Q1 NMOS G=g D=d S=s\nU1 chip XX=o YY=y\nR1 10 o g"))
+    (entry,) = json.loads(run("review", path, "--format", "json")[1])["not_judged"]
+    assert "Q1" in entry["reason"]
+    assert "Role" in entry["needs"]
 
 
 def test_a_sheet_leads_to_the_board_beside_it(tmp_path: Path) -> None:

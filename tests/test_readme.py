@@ -3,8 +3,12 @@
 from __future__ import annotations
 
 import re
+import shutil
 from pathlib import Path
 
+import pytest
+
+from gatecheck.settings import read_settings
 from tests.test_hostile import run
 
 ROOT = Path(__file__).parent.parent
@@ -21,6 +25,20 @@ def test_pasted_evidence_is_real() -> None:
     shown = re.search(r"\$ gatecheck gates sample_boards/logic\n(.*?)\n```", README, re.DOTALL)
     assert shown is not None
     assert shown[1] in run("gates", "sample_boards/logic")[1]
+
+
+def test_pasted_finding_is_real(tmp_path: Path, monkeypatch: pytest.MonkeyPatch) -> None:
+    shown = re.search(r"\$ gatecheck review bead_far.kicad_pcb\n(.*?)\n```", README, re.DOTALL)
+    assert shown is not None
+    shutil.copy(ROOT / "sample_boards/bead_far/bead_far.kicad_pcb", tmp_path)
+    monkeypatch.chdir(tmp_path)
+    assert shown[1] in run("review", "bead_far.kicad_pcb")[1]
+
+
+def test_the_shown_project_file_is_valid() -> None:
+    shown = re.search(r"```yaml\n(bead_policy.*?)```", README, re.DOTALL)
+    assert shown is not None
+    assert read_settings("gatecheck.yaml", shown[1]).limits.loop_area_m2 == pytest.approx(60e-6)
 
 
 def test_rule_table_is_complete() -> None:

@@ -4,7 +4,7 @@ from __future__ import annotations
 
 from dataclasses import dataclass
 from functools import cached_property
-from typing import TYPE_CHECKING
+from typing import TYPE_CHECKING, TypeVar
 
 from gatecheck.catalogue.load import word_in
 from gatecheck.networks.ports import CONNECTOR
@@ -45,6 +45,11 @@ class Surroundings:
     def by_source(self) -> Mapping[str, list[Transistor]]:
         """The transistors by the net of their source."""
         return _grouped(self.transistors, lambda transistor: transistor.source_net)
+
+    @cached_property
+    def by_both(self) -> Mapping[tuple[str, str], list[Transistor]]:
+        """The transistors by the nets of drain and source."""
+        return _grouped(self.transistors, lambda transistor: (transistor.drain_net, transistor.source_net))
 
     def partners(self, transistor: Transistor) -> list[tuple[Transistor, str]]:
         """The driven transistors that form a half bridge with this one, and the net in the middle.
@@ -87,10 +92,15 @@ def is_p_channel(part: Part) -> bool:
     return bool(word_in("p_channel", f"{part.description} {part.value} {part.library}".replace("_", " ")))
 
 
-def _grouped(transistors: Sequence[Transistor], net_of: Callable[[Transistor], str]) -> Mapping[str, list[Transistor]]:
-    groups: dict[str, list[Transistor]] = {}
+_Nets = TypeVar("_Nets")
+
+
+def _grouped(
+    transistors: Sequence[Transistor], nets_of: Callable[[Transistor], _Nets]
+) -> Mapping[_Nets, list[Transistor]]:
+    groups: dict[_Nets, list[Transistor]] = {}
     for transistor in transistors:
-        groups.setdefault(net_of(transistor), []).append(transistor)
+        groups.setdefault(nets_of(transistor), []).append(transistor)
     return groups
 
 

@@ -8,6 +8,7 @@ from pathlib import Path
 
 from gatecheck.errors import InputError
 from gatecheck.files import shown_path
+from gatecheck.settings import NAME
 
 _BOARD, _NETLIST, _SHEET, _PROJECT = ".kicad_pcb", ".net", ".kicad_sch", ".kicad_pro"
 _READ = (_BOARD, _NETLIST)
@@ -45,8 +46,10 @@ def find_projects(paths: list[Path]) -> list[Project]:
     for path in paths:
         # Not Path.is_dir: it raises for names that the system cannot hold, and opening says that better.
         folder = os.path.isdir(path)  # noqa: PTH112 (see above)
-        for file in _designs_below(path) if folder else [path]:
-            chosen.setdefault(_design_of(file), []).append((file, not folder))
+        # A project file stands for the designs it speaks of: those of its folder.
+        below = path if folder else path.parent if path.name == NAME and path.exists() else None
+        for file in _designs_below(below) if below is not None else [path]:
+            chosen.setdefault(_design_of(file), []).append((file, below is None))
     return [_project(files) for files in chosen.values()]
 
 

@@ -74,9 +74,7 @@ def _lacking(gate: Gate, message: str, origin: Origin) -> Say:
         level=Level.ERROR if origin is Origin.PROJECT else Level.WARNING,
         rests_on=origin,
         parts=gate.gate_resistors,
-        advice="fit a bead between gate resistor and gate, as at the like gates"
-        if origin is Origin.VALUE
-        else "fit a bead between gate resistor and gate",
+        advice="fit a bead between gate resistor and gate",
     )
 
 

@@ -44,9 +44,9 @@ def bridge(around: Surroundings, transistor: Transistor) -> Iterator[Found]:
             yield "bus_capacitor", {"part": element.part}
     else:
         yield from _back_to_back(around, transistor)
-    for other in around.by_drain.get(transistor.drain_net, ()):
+    for other in around.by_both[transistor.drain_net, transistor.source_net]:
         beside = other.key not in around.alternates.get(transistor.key, ())
-        if other.part != transistor.part and other.source_net == transistor.source_net and beside:
+        if other.part != transistor.part and beside:
             yield "paralleled", {"part": name_of(other.key)}
             return
 
