@@ -278,21 +278,34 @@ def grouped(findings: Iterable[Finding]) -> list[Finding]:
     """Findings that say the same of several subjects, said once, with the others in `also`."""
     groups: dict[object, list[Finding]] = {}
     for finding in findings:
-        key = (
-            finding.rule,
-            finding.verdict,
-            finding.level,
-            finding.message,
-            finding.edge,
-            finding.rests_on,
-            finding.advice,
-        )
-        groups.setdefault((key, finding.value, finding.limit), []).append(finding)
+        kind = (finding.rule, finding.verdict, finding.level, finding.message, finding.edge, finding.rests_on)
+        groups.setdefault((kind, finding.quantity, finding.limit), []).append(finding)
     return [_merged(group) for group in groups.values()]
 
 
+# Of channels that each need another move, so many are spelled out. Our choice.
+_ADVICES = 3
+
+
 def _merged(group: list[Finding]) -> Finding:
+    """One finding for all: the value is the interval over them, what to do is spelled out for the first few."""
     first, *others = group
-    places = tuple(dict.fromkeys(place for finding in group for place in finding.places))
-    asks = tuple(dict.fromkeys(ask for finding in group for ask in finding.ask))
-    return replace(first, also=tuple(finding.subject for finding in others), places=places, ask=asks)
+    if not others:
+        return first
+    advices = list(dict.fromkeys(finding.advice for finding in group if finding.advice))
+    more = len(advices) - _ADVICES
+    advice = "; ".join(advices[:_ADVICES]) + (f"; {more} more alike" if more > 0 else "")
+    values = [finding.value for finding in group if finding.value is not None]
+    value = first.value
+    if value is not None:
+        low, high = min(v.low for v in values), max(v.high for v in values)
+        origin = least_trusted(*(v.origin for v in values))
+        value = Quantity(low, max(v.nominal for v in values), high, value.unit, origin)
+    return replace(
+        first,
+        also=tuple(finding.subject for finding in others),
+        places=tuple(dict.fromkeys(place for finding in group for place in finding.places)),
+        ask=tuple(dict.fromkeys(ask for finding in group for ask in finding.ask)),
+        value=value,
+        advice=advice,
+    )
