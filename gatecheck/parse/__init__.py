@@ -1,0 +1,1 @@
+"""Text to syntax: knows the file formats, no electricity. Lengths are still millimetres here."""
