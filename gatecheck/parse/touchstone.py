@@ -8,7 +8,6 @@ skipped. Mixed-mode data are refused, since no part here has modes.
 
 from __future__ import annotations
 
-import math
 import re
 from dataclasses import dataclass, field
 from typing import TYPE_CHECKING, NoReturn
@@ -42,6 +41,7 @@ _BLOCKS = {
     "begin information": "information",
 }
 _WITHOUT_EFFECT = frozenset({"number of noise frequencies", "end information", "end"})
+_LARGEST, _LARGEST_DB = 1e100, 2000.0  # beyond any measurement; keeps products in a double's range; our choice
 _MOST_PORTS = 64  # a matrix of this size is no part of a gate drive; our choice, against absurd files
 _NOISE_VALUES = 5  # numbers on a noise line (specification, noise parameters)
 _TWO_PORTS = 2
@@ -266,7 +266,7 @@ class _Reader:
         if self.form == "ri":
             entries = first + 1j * second
         else:
-            size = first if self.form == "ma" else 10.0 ** (np.minimum(first, 6000.0) / 20.0)
+            size = first if self.form == "ma" else 10.0 ** (np.minimum(first, _LARGEST_DB) / 20.0)
             entries = size * np.exp(1j * np.radians(second))
         if self.matrix != "full":
             rows, columns = np.tril_indices(ports) if self.matrix == "lower" else np.triu_indices(ports)
@@ -284,7 +284,7 @@ class _Reader:
             if _NUMBER.fullmatch(word) is None:
                 self._refuse(line, f"{word[:40]} is no number", "check that the file was exported whole")
             value = float(word.lower().replace("d", "e"))
-            if not math.isfinite(value):
+            if not abs(value) <= _LARGEST:
                 self._refuse(line, f"{word[:40]} is out of range", "check that the file was exported whole")
             yield value
 

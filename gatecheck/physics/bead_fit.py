@@ -29,6 +29,7 @@ _CAPACITANCE_F = (1e-14, 1e-11)  # 0.01 to 10 pF holds every chip bead (common p
 _SCAN_POINTS = 13  # four per decade, then golden section; our choice
 _GOLDEN_STEPS = 18  # to 2e-4 of a scan step; our choice
 _REACH = 2.0  # a fit says nothing beyond a factor of two outside its data; our choice
+_BELOW = 4.0  # lowest section of a fit to few points, below the lowest point; our choice
 _LEAST_SHARE = 1e-9  # sections below this part of the whole are dropped; our choice
 _SPREAD = 1e-3  # pull towards small even sections where few points leave them open; our choice
 _NEWTON_ROUNDS = 60  # Gauss-Newton steps for read-off points; our choice
@@ -109,7 +110,7 @@ def fit_to_impedance(
     Returns:
         The fit; its error is relative to |Z|.
     """
-    basis, corners = _basis(frequency_hz, sections_count)
+    basis, corners = _basis(frequency_hz, sections_count, lowest_hz=float(frequency_hz.min()))
     susceptance_per_f: ComplexArray = 2j * math.pi * frequency_hz.astype(np.complex128)
 
     def solve(capacitance_f: float) -> tuple[float, RealArray]:
@@ -150,8 +151,11 @@ def fit_to_points(
     Returns:
         The fit; its error is relative to the value read.
     """
-    basis, corners = _basis(frequency_hz, SECTIONS_COUNT)
     kinds = np.array(parts)
+    # Few points start high on the curve, so sections below them may have to carry part of the resistance. From |Z|
+    # alone that cannot be told from inductance, and the bead is taken as inductive there.
+    below = 1.0 if np.all(kinds == ImpedancePart.MAGNITUDE) else _BELOW
+    basis, corners = _basis(frequency_hz, SECTIONS_COUNT, lowest_hz=float(frequency_hz.min()) / below)
     susceptance_per_f: ComplexArray = 2j * math.pi * frequency_hz.astype(np.complex128)
     peak = float(np.abs(value_ohm).max())
 
@@ -221,9 +225,11 @@ class _PointModel:
         return float(errors @ errors + (spread * coefficients) @ (spread * coefficients))
 
 
-def _basis(frequency_hz: RealArray, sections_count: int) -> tuple[ComplexArray, RealArray]:
+def _basis(
+    frequency_hz: RealArray, sections_count: int, *, lowest_hz: float
+) -> tuple[ComplexArray, RealArray]:
     """Impedance of each section of one ohm, with a pure inductance as the last; and their corners."""
-    corners = np.geomspace(frequency_hz.min(), frequency_hz.max(), sections_count)
+    corners = np.geomspace(lowest_hz, frequency_hz.max(), sections_count)
     turned = 1j * frequency_hz[:, None] / corners
     inductance = 1j * frequency_hz[:, None] / corners[-1]
     return np.concatenate([turned / (1.0 + turned), inductance], axis=1), corners

@@ -78,25 +78,24 @@ def quadratic_integral(*, state_matrix_per_s: RealArray, start_au: RealArray) ->
     """
     matrix = np.asarray(state_matrix_per_s)
     identity = np.eye(matrix.shape[-1])
-    # Any positive shift converges; the root of the row sums' extent lies between the slow and the fast rates.
-    shift = 1.0 / np.sqrt(np.abs(matrix).sum(axis=-1).max(axis=-1) * _slowest_rate(matrix))[..., None, None]
+    poles = np.linalg.eigvals(matrix)
+    stable = (poles.real < 0.0).all(axis=-1)
+    matrix = np.where(stable[..., None, None], matrix, -identity)
+    # Any positive shift converges; the geometric mean of the slowest rate and the row sums lies in between.
+    slowest = np.where(stable, np.abs(poles).min(axis=-1), 1.0)
+    shift = 1.0 / np.sqrt(np.abs(matrix).sum(axis=-1).max(axis=-1) * slowest)[..., None, None]
     resolvent = np.linalg.inv(identity - shift * matrix)
     power = resolvent @ (identity + shift * matrix)
     column = resolvent @ np.asarray(start_au)[..., None]
     total = 2.0 * shift * (column @ column.swapaxes(-1, -2))
-    with np.errstate(over="ignore", invalid="ignore"):  # a growing state runs away and ends as nan below
-        for _ in range(_SMITH_DOUBLINGS):
-            addend = power @ total @ power.swapaxes(-1, -2)
-            total = total + addend
-            power = power @ power
-            settled = _size(addend) <= _SMITH_DONE * _size(total)
-            if np.all(settled):
-                break
-    return np.where(settled[..., None, None], total, np.nan)
-
-
-def _slowest_rate(matrix: RealArray) -> RealArray:
-    return np.asarray(np.abs(np.linalg.eigvals(matrix)).min(axis=-1))
+    for _ in range(_SMITH_DOUBLINGS):
+        addend = power @ total @ power.swapaxes(-1, -2)
+        total = total + addend
+        power = power @ power
+        settled = _size(addend) <= _SMITH_DONE * _size(total)
+        if np.all(settled):
+            break
+    return np.where((settled & stable)[..., None, None], total, np.nan)
 
 
 def _size(matrix: RealArray) -> RealArray:

@@ -91,7 +91,7 @@ def nonlinear_edge(
         of this very step and must not be scaled to another.
 
     Args:
-        loop: the loop, corners (...); its capacitance counts where no curve is given, and sets the time scale.
+        loop: the loop, corners (...); its capacitance counts where no curve is given and sets the time scale.
         start_v: driver voltage before the step.
         final_v: driver voltage after it.
         charge: gate charge curve, or None for the loop's capacitance.

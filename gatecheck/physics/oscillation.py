@@ -42,7 +42,7 @@ class OscillationSweep:
     unstable_high_siemens: RealArray
 
 
-def dominant_growth_per_s(poles_per_s: ComplexArray) -> RealArray:
+def dominant_growth_per_s(*, poles_per_s: ComplexArray) -> RealArray:
     """Growth of the slowest-dying or fastest-growing natural frequency; above zero is unstable.
 
     Source: definition.
@@ -57,7 +57,7 @@ def dominant_growth_per_s(poles_per_s: ComplexArray) -> RealArray:
     return np.asarray(poles_per_s.real.max(axis=-1))
 
 
-def fastest_mode(poles_per_s: ComplexArray) -> tuple[RealArray, RealArray]:
+def fastest_mode(*, poles_per_s: ComplexArray) -> tuple[RealArray, RealArray]:
     """Growth and frequency of the oscillation that grows fastest or dies slowest.
 
     Decaying real poles, the slow discharge of the gate, are left out; a growing real pole is a relaxation
@@ -138,14 +138,14 @@ def sweep_transconductance(
     step = top / (points_count - 1)
     place = np.arange(points_count, dtype=np.float64).reshape(-1, *(1 for _ in top.shape))
     poles = poles_at(_LOWEST_SIEMENS * np.exp(place * step))
-    growth, frequency = fastest_mode(poles)
+    growth, frequency = fastest_mode(poles_per_s=poles)
     step = np.broadcast_to(step, growth.shape[1:])
     best = np.argmax(growth, axis=0)
     summit = _LOWEST_SIEMENS * np.exp(_parabola_summit(growth, best) * step)
-    summit_growth, summit_frequency = (part[0] for part in fastest_mode(poles_at(summit[None])))
+    summit_growth, summit_frequency = (part[0] for part in fastest_mode(poles_per_s=poles_at(summit[None])))
     grid_growth = growth.max(axis=0)
     better = summit_growth >= grid_growth
-    low, high = _window(poles_at, dominant_growth_per_s(poles) > 0.0, step)
+    low, high = _window(poles_at, dominant_growth_per_s(poles_per_s=poles) > 0.0, step)
     return OscillationSweep(
         growth_per_s=np.where(better, summit_growth, grid_growth),
         frequency_hz=np.where(better, summit_frequency, np.take_along_axis(frequency, best[None], axis=0)[0]),
@@ -211,7 +211,7 @@ def _window(
         for _ in range(_EDGE_BISECTIONS if bool((found & ~at_end).any()) else 0):
             middle = 0.5 * (stable_place + unstable_place)
             poles = poles_at(_LOWEST_SIEMENS * np.exp(middle * step)[None])[0]
-            grows = dominant_growth_per_s(poles) > 0.0
+            grows = dominant_growth_per_s(poles_per_s=poles) > 0.0
             unstable_place = np.where(grows, middle, unstable_place)
             stable_place = np.where(grows, stable_place, middle)
         edges.append(np.where(found, _LOWEST_SIEMENS * np.exp(unstable_place * step), np.nan))

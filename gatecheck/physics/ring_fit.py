@@ -92,7 +92,7 @@ def decay_error_bound_per_s(*, noise_ratio: Real, decay_per_s: Real, step_s: Rea
     """Least standard error of decay rate and angular frequency, 4 (sigma / A) alpha^1.5 sqrt(dt).
 
     Source: Cramer-Rao bound for white noise, own closed form, checked against the numeric Fisher matrix.
-    Valid: record of three decay times or more, frequency well above the decay rate; 0 to 2 % low.
+    Valid: record of three decay times or more, frequency well above the decay rate; 0 to 2.5 % low.
 
     Args:
         noise_ratio: sigma / A, noise per sample in parts of the amplitude at the start.

@@ -139,7 +139,7 @@ def renormalised_ratio(
 ) -> ComplexArray:
     """Scattering parameters for another reference, the same at all ports.
 
-    Source: Kurokawa, IEEE Trans. MTT 13(2) (1965) p. 194, for real references (from memory).
+    Source: definition of power waves for real references, a' = (v + Z' i) / (2 root(Z')), written in a and b.
     Valid: references above zero.
 
     Args:
@@ -152,7 +152,7 @@ def renormalised_ratio(
     """
     old, new = np.asarray(reference_ohm), np.asarray(new_reference_ohm)
     mismatch = (new - old) / (new + old)
-    scale = np.sqrt(1.0 - mismatch**2) / (1.0 - mismatch)
+    scale = np.sqrt(1.0 - mismatch**2)
     shift = mismatch * np.eye(old.shape[-1])
     moved = (scattering_ratio - shift) @ np.linalg.inv(np.eye(old.shape[-1]) - shift @ scattering_ratio)
     return np.asarray(moved / scale[:, None] * scale[None, :])

@@ -34,6 +34,7 @@ _NEWTON_ITERATIONS = 8
 _NEWTON_SHARE = 0.01  # Newton's last correction in parts of the error tolerance; our choice
 _MOST_ATTEMPTS = 20_000  # steps before giving up; a hundred times what the check cases need; our choice
 _SAFETY, _SHRINK, _GROW = 0.9, 0.2, 4.0  # usual step size control (textbook)
+_LEAST_STEP = 1e-14  # in parts of the record, where time stops resolving it
 _FIRST_STEP = 1e-7  # in parts of the record; our choice
 
 
@@ -88,7 +89,7 @@ def integrate(
         The solution; corners that needed fewer steps repeat their last one.
 
     Raises:
-        NotIntegrableError: no end after 20 000 steps.
+        NotIntegrableError: a singularity, or no end after 20 000 steps.
     """
     state = np.array(start_au, dtype=np.float64)
     end_s = np.broadcast_to(np.asarray(duration_s, dtype=np.float64), state.shape[:-1])
@@ -97,13 +98,16 @@ def integrate(
     times, states, slopes = [time_s], [state], [slope]
     for _ in range(_MOST_ATTEMPTS):
         step_s = np.minimum(step_s, end_s - time_s)
-        new_state, new_slope, error = _step(system, state, step_s, scale_au * tolerance_ratio)
+        with np.errstate(over="ignore", invalid="ignore"):  # Newton may run away; the step is then refused
+            new_state, new_slope, error = _step(system, state, step_s, scale_au * tolerance_ratio)
         accepted = error <= 1.0
         time_s = np.where(accepted, time_s + step_s, time_s)
         state = np.where(accepted[..., None], new_state, state)
         slope = np.where(accepted[..., None], new_slope, slope)
         factor = _SAFETY * np.maximum(error, 1e-12) ** (-1.0 / _ERROR_ORDER)
         step_s = step_s * np.clip(factor, _SHRINK, _GROW)
+        if np.any(~accepted & (step_s < _LEAST_STEP * end_s)):
+            raise NotIntegrableError("the step size fell to nothing")
         if accepted.any():
             times.append(time_s)
             states.append(state)

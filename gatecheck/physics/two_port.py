@@ -13,7 +13,7 @@ if TYPE_CHECKING:
 def scattering_from_impedance_ratio(*, matrix_ohm: ComplexArray, reference_ohm: RealArray) -> ComplexArray:
     """S from Z, (z - 1)(z + 1)^-1 with z normalised by the roots of the references.
 
-    Source: circuit theory (Kurokawa 1965 for real references, from memory).
+    Source: circuit theory.
     Valid: references above zero.
 
     Args:
@@ -34,7 +34,7 @@ def scattering_from_admittance_ratio(
 ) -> ComplexArray:
     """S from Y, (1 - y)(1 + y)^-1 with y normalised by the roots of the references.
 
-    Source: circuit theory (Kurokawa 1965 for real references, from memory).
+    Source: circuit theory.
     Valid: references above zero.
 
     Args:

@@ -1,0 +1,1 @@
+"""Reports to text: no decisions, no printing."""
