@@ -41,7 +41,7 @@ _BLOCKS = {
     "begin information": "information",
 }
 _WITHOUT_EFFECT = frozenset({"number of noise frequencies", "end information", "end"})
-_LARGEST, _LARGEST_DB = 1e100, 2000.0  # beyond any measurement; keeps products in a double's range; our choice
+_LARGEST, _LARGEST_DB = 1e100, 2000.0  # beyond any measurement, within a double's range; our choice
 _MOST_PORTS = 64  # a matrix of this size is no part of a gate drive; our choice, against absurd files
 _NOISE_VALUES = 5  # numbers on a noise line (specification, noise parameters)
 _TWO_PORTS = 2

@@ -21,10 +21,7 @@ if TYPE_CHECKING:
 
 _SCAN_PER_DECADE = 40  # a root of X or of X - R is bracketed on this grid, then bisected; our choice
 _BISECTIONS = 45  # to 1e-14 of a grid step; our choice
-_SCAN_DECADES = (
-    4.0,
-    11.0,
-)  # 10 kHz to 100 GHz holds every crossover and resonance of a chip bead; our choice
+_SCAN_DECADES = (4.0, 11.0)  # 10 kHz to 100 GHz holds whatever a chip bead does; our choice
 
 
 @dataclass(frozen=True, slots=True, kw_only=True)

@@ -7,6 +7,7 @@ from typing import TYPE_CHECKING
 import numpy as np
 
 from gatecheck.physics.bead import BeadLadder, scaled_bead
+from gatecheck.physics.inductance import MU_0_H_PER_M
 
 if TYPE_CHECKING:
     from gatecheck.physics.arrays import Real, RealArray
@@ -97,6 +98,27 @@ def bias_constants(
     exponent = np.log(lost_first / lost_second) / np.log(ratio)
     half = np.asarray(first_current_a) / lost_first ** (1.0 / exponent)
     return np.where(sound, half, np.nan), np.where(sound, exponent, np.nan)
+
+
+def saturation_current_a(
+    *, saturation_t: Real, initial_permeability_ratio: Real, path_length_m: Real, turns_count: Real
+) -> RealArray:
+    """Order of magnitude of the current that saturates a bead, B_s l / (mu_0 mu_i N).
+
+    Source: Ampere's law and the knee of the magnetisation curve at B_s / mu_i (textbook).
+    Valid: a factor of two either way; use a bias curve where there is one.
+
+    Args:
+        saturation_t: B_s in tesla, about 0.35 for NiZn (from memory).
+        initial_permeability_ratio: mu_i.
+        path_length_m: l, magnetic path.
+        turns_count: N.
+
+    Returns:
+        Amperes.
+    """
+    field_a_per_m = np.divide(saturation_t, MU_0_H_PER_M * np.asarray(initial_permeability_ratio))
+    return np.asarray(field_a_per_m * path_length_m / turns_count)
 
 
 def flux_vs(*, current_a: Real, inductance_h: Real, half_current_a: Real, residual_ratio: Real) -> RealArray:

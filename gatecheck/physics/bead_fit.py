@@ -152,8 +152,8 @@ def fit_to_points(
         The fit; its error is relative to the value read.
     """
     kinds = np.array(parts)
-    # Few points start high on the curve, so sections below them may have to carry part of the resistance. From |Z|
-    # alone that cannot be told from inductance, and the bead is taken as inductive there.
+    # Few points start high on the curve, so sections below them may have to carry part of the resistance.
+    # From |Z| alone that cannot be told from inductance, and the bead is taken as inductive there.
     below = 1.0 if np.all(kinds == ImpedancePart.MAGNITUDE) else _BELOW
     basis, corners = _basis(frequency_hz, SECTIONS_COUNT, lowest_hz=float(frequency_hz.min()) / below)
     susceptance_per_f: ComplexArray = 2j * math.pi * frequency_hz.astype(np.complex128)

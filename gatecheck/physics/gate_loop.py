@@ -39,9 +39,9 @@ class GateLoop:
         bead: the bead in the loop, or None.
     """
 
-    resistance_ohm: RealArray
-    inductance_h: RealArray
-    capacitance_f: RealArray
+    resistance_ohm: Real
+    inductance_h: Real
+    capacitance_f: Real
     bead: BeadLadder | None = None
 
 

@@ -1,8 +1,9 @@
 """Intervals through any function, and which input would shrink the answer most.
 
-A monotone function is evaluated at the two corners that its signs name, or at all corners. Anything else is
-sampled: all corners (or those of the widest inputs, if there are many) and evenly spread inner points,
-always the same ones, so that an unchanged design gives an unchanged answer.
+Inputs in which the function is monotone, with a known sign, only matter at their ends: all of them at the
+ends that raise the result, or all at those that lower it. The others are sampled: all corners (or those of
+the widest inputs, if there are many) and evenly spread inner points, always the same ones, so that an
+unchanged design gives an unchanged answer.
 """
 
 from __future__ import annotations
@@ -69,24 +70,29 @@ def propagate(
 
     Source: a monotone function has its extremes at corners; otherwise sampling, with a Kronecker sequence of
         the generalised golden ratio for the inner points (Roberts 2018, from memory).
-    Valid: with signs, exact if they are right; without, a peak between the points is missed and `sampled`
-        says so. Values of nan are left out; only nan gives nan.
+    Valid: exact where every uncertain input has a sign and the signs are right; else a peak between the
+        points is missed, and `sampled` says so. Values of nan are left out; only nan gives nan.
 
     Args:
         function: takes arrays of shape (m,) by input name, gives one value per point, shape (m,).
         inputs: intervals by name.
-        signs: +1 where a larger input raises the result, -1 where it lowers it, for every input; or None.
+        signs: +1 where a larger input raises the result, -1 where it lowers it; inputs without a sign are
+            sampled. None for no signs at all.
 
     Returns:
         The bounds and where they lie.
     """
-    points = _sampled(inputs) if signs is None else _signed(inputs, signs)
+    signs = {} if signs is None else signs
+    points = _points(inputs, signs)
+    sampled = any(
+        interval.low_au != interval.high_au for name, interval in inputs.items() if name not in signs
+    )
     values = np.asarray(function(points), dtype=np.float64)
     known = ~np.isnan(values)
     if not known.any():
         nowhere = dict.fromkeys(inputs, math.nan)
         interval = Interval(math.nan, math.nan, math.nan)
-        return Spread(interval=interval, at_low=nowhere, at_high=nowhere, sampled=signs is None)
+        return Spread(interval=interval, at_low=nowhere, at_high=nowhere, sampled=sampled)
     low, high = (
         int(np.argmin(np.where(known, values, np.inf))),
         int(np.argmax(np.where(known, values, -np.inf))),
@@ -95,7 +101,7 @@ def propagate(
         interval=Interval(float(values[low]), float(values[0]), float(values[high])),
         at_low={name: float(points[name][low]) for name in inputs},
         at_high={name: float(points[name][high]) for name in inputs},
-        sampled=signs is None,
+        sampled=sampled,
     )
 
 
@@ -138,16 +144,23 @@ def _left(whole: Interval, left: Interval) -> float:
     return remaining / width if width > 0.0 else 1.0
 
 
-def _signed(inputs: Mapping[str, Interval], signs: Mapping[str, int]) -> dict[str, RealArray]:
-    """The nominal point, then the corner of the lowest and that of the highest result."""
-    return {
-        name: np.array(
-            [interval.nominal_au, interval.low_au, interval.high_au]
-            if signs[name] > 0
-            else [interval.nominal_au, interval.high_au, interval.low_au]
-        )
-        for name, interval in inputs.items()
-    }
+def _points(inputs: Mapping[str, Interval], signs: Mapping[str, int]) -> dict[str, RealArray]:
+    """The nominal point, then every sample of the unsigned inputs at the lowering and at the raising ends."""
+    unsigned = _sampled({name: interval for name, interval in inputs.items() if name not in signs})
+    if len(unsigned) == len(inputs):
+        return unsigned
+    count = max((values.size for values in unsigned.values()), default=1)
+    points = {}
+    for name, interval in inputs.items():
+        if name in unsigned:
+            values = unsigned[name]
+            points[name] = np.concatenate([values[:1], values, values])
+            continue
+        lowering, raising = interval.low_au, interval.high_au
+        if signs[name] < 0:
+            lowering, raising = raising, lowering
+        points[name] = np.repeat([interval.nominal_au, lowering, raising], [1, count, count])
+    return points
 
 
 def _sampled(inputs: Mapping[str, Interval]) -> dict[str, RealArray]:

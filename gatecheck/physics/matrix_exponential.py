@@ -12,15 +12,13 @@ from typing import TYPE_CHECKING
 import numpy as np
 
 if TYPE_CHECKING:
-    from gatecheck.physics.arrays import RealArray
+    from gatecheck.physics.arrays import BoolArray, RealArray
 
 # Coefficients of the [7/7] Pade approximant of exp, 17297280 * (7! (14 - k)!) / (14! k! (7 - k)!).
 _PADE = (17297280.0, 8648640.0, 1995840.0, 277200.0, 25200.0, 1512.0, 56.0, 1.0)
 # Largest 1-norm at which that approximant is exact to double precision (Higham 2005, table 2.3; from memory).
 _PADE_NORM = 0.95
-_SMITH_DOUBLINGS = (
-    60  # 2^60 exceeds any spread of time constants a double can hold beside its digits; our choice
-)
+_SMITH_DOUBLINGS = 60  # 2^60 exceeds any spread of time constants that a double can hold; our choice
 _SMITH_DONE = 1e-15  # relative size of the last addend; our choice, some bits above rounding
 
 
@@ -79,7 +77,7 @@ def quadratic_integral(*, state_matrix_per_s: RealArray, start_au: RealArray) ->
     matrix = np.asarray(state_matrix_per_s)
     identity = np.eye(matrix.shape[-1])
     poles = np.linalg.eigvals(matrix)
-    stable = (poles.real < 0.0).all(axis=-1)
+    stable = np.asarray((poles.real < 0.0).all(axis=-1))
     matrix = np.where(stable[..., None, None], matrix, -identity)
     # Any positive shift converges; the geometric mean of the slowest rate and the row sums lies in between.
     slowest = np.where(stable, np.abs(poles).min(axis=-1), 1.0)
@@ -92,8 +90,8 @@ def quadratic_integral(*, state_matrix_per_s: RealArray, start_au: RealArray) ->
         addend = power @ total @ power.swapaxes(-1, -2)
         total = total + addend
         power = power @ power
-        settled = _size(addend) <= _SMITH_DONE * _size(total)
-        if np.all(settled):
+        settled: BoolArray = np.asarray(_size(addend) <= _SMITH_DONE * _size(total))
+        if settled.all():
             break
     return np.where((settled & stable)[..., None, None], total, np.nan)
 

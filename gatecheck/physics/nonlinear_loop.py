@@ -24,9 +24,7 @@ if TYPE_CHECKING:
     from gatecheck.physics.arrays import Real, RealArray
 
 _CURRENT, _CHARGE, _SECTIONS = 0, 1, 2  # places in the state
-_LEAST_ELASTANCE = (
-    1e-300  # keeps a start on a plateau from dividing by zero; it then starts at the plateau's foot
-)
+_LEAST_ELASTANCE = 1e-300  # keeps a start on a plateau from dividing by zero; it starts at its foot
 _PERIODS = 6.0  # of the ring without saturation; the extremes lie in the first one; our choice
 _NO_BEAD = BeadLadder(
     dc_resistance_ohm=np.zeros(()),

@@ -15,9 +15,7 @@ import numpy as np
 if TYPE_CHECKING:
     from gatecheck.physics.arrays import ComplexArray, Real, RealArray
 
-_AGREES = (
-    0.05  # an identity between S11 and S21 that fails by more than this does not hold; physics, our choice
-)
+_AGREES = 0.05  # an identity between S11 and S21 that fails by more does not hold; our choice
 _LOWEST_SHARE = 0.1  # share of the points, from the lowest frequency, that decides the topology; our choice
 _EVEN_SPLIT = 0.5  # |S21| of a part of twice the reference in series, or of half of it in shunt
 

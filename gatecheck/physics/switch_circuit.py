@@ -120,7 +120,12 @@ def parallel_poles_per_s(devices: Sequence[SwitchBranch], shared: SharedLeads) -
 
     Returns:
         Poles in rad/s, shape (..., n).
+
+    Raises:
+        ValueError: no switch, or a mixture of switches with and without a Kelvin lead.
     """
+    if len({device.kelvin_inductance_h is None for device in devices}) != 1:
+        raise ValueError("give at least one switch, all with or all without a Kelvin lead")
     blocks = [_device_equations(device) for device in devices]
     sizes = [storage.shape[-1] for storage, _ in blocks]
     starts = [sum(sizes[:place]) for place in range(len(sizes))]

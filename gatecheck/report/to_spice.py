@@ -6,7 +6,6 @@ SPICE 3 and its descendants. Run one in batch mode; the `.meas` lines print what
 
 from __future__ import annotations
 
-from collections.abc import Iterator, Sequence
 from typing import TYPE_CHECKING
 
 import numpy as np
@@ -15,6 +14,8 @@ from gatecheck.physics.gate_loop import loop_states
 from gatecheck.physics.transient import record_length_s
 
 if TYPE_CHECKING:
+    from collections.abc import Iterator, Sequence
+
     from gatecheck.physics.arrays import Real
     from gatecheck.physics.bead import BeadLadder
     from gatecheck.physics.gate_loop import GateLoop
@@ -26,7 +27,7 @@ _STEP_S = 1e-12  # duration of an "ideal" edge; our choice, far below any gate l
 _POINTS = 4000  # time steps of a record; our choice, 0.1 % on peaks with the trapezoidal rule
 _OPTIONS = ".options reltol=1e-5 abstol=1e-10 vntol=1e-8 method=trap"
 _KICK_V = 1e-3  # start of an oscillation; our choice, any size gives the same growth in a linear circuit
-_CLAMP_DROP = 1e-4  # the clamp takes the load at this part of the bus voltage above it, as in `hard_switching`
+_CLAMP_DROP = 1e-4  # the clamp takes the load at this part of the bus voltage above it (`hard_switching`)
 _SHORT_OHM = 1e-6  # a lead without resistance and inductance; a source of 0 V troubles the step control
 
 
@@ -47,7 +48,7 @@ def edge_deck(
     """
     lines = [
         *_driver(loop, start_v, final_v),
-        *_bead_lines("b", loop.bead, "n3", "g"),
+        *_bead_lines("b", loop.bead, ("n3", "g")),
         f"Cg g 0 {_number(loop.capacitance_f)} ic={_number(start_v)}",
     ]
     return _deck(title, [*lines, *_edge_analysis(loop, start_v, final_v, duration_s)])
@@ -75,7 +76,7 @@ def nonlinear_edge_deck(
     """
     start_v, final_v = swing_v
     lines = _driver(loop, start_v, final_v)
-    lines += _bead_lines("b", loop.bead, "n3", "g", saturation=saturation, with_capacitance=False)
+    lines += _bead_lines("b", loop.bead, ("n3", "g"), saturation=saturation, with_capacitance=False)
     if charge is None:
         lines.append(f"Cg g 0 {_number(loop.capacitance_f)} ic={_number(start_v)}")
     else:
@@ -94,7 +95,9 @@ def nonlinear_edge_deck(
     return _deck(title, [*lines, *_edge_analysis(loop, start_v, final_v, None)])
 
 
-def bump_deck(loop: GateLoop, *, title: str, gate_drain_f: float, slope_v_per_s: float, swing_v: float) -> str:
+def bump_deck(
+    loop: GateLoop, *, title: str, gate_drain_f: float, slope_v_per_s: float, swing_v: float
+) -> str:
     """Deck of a dv/dt bump on a gate that is held off, without corner axes.
 
     Args:
@@ -107,14 +110,13 @@ def bump_deck(loop: GateLoop, *, title: str, gate_drain_f: float, slope_v_per_s:
     Returns:
         The deck; it measures `vmax` above the off voltage.
     """
-    current, edge_s = gate_drain_f * slope_v_per_s, swing_v / slope_v_per_s
+    pushed, edge_s = _number(gate_drain_f * slope_v_per_s), swing_v / slope_v_per_s
     lines = [
         f"R1 0 n2 {_number(loop.resistance_ohm)}",
         f"L1 n2 n3 {_number(loop.inductance_h)} ic=0",
-        *_bead_lines("b", loop.bead, "n3", "g"),
+        *_bead_lines("b", loop.bead, ("n3", "g")),
         f"Cg g 0 {_number(loop.capacitance_f)} ic=0",
-        f"Ig 0 g PWL(0 {_number(current)} {_number(edge_s)} {_number(current)}"
-        f" {_number(edge_s + _STEP_S)} 0)",
+        f"Ig 0 g PWL(0 {pushed} {_number(edge_s)} {pushed} {_number(edge_s + _STEP_S)} 0)",
         *_transient(3.0 * edge_s, 3.0 * edge_s / _POINTS),
         ".meas tran vmax MAX v(g)",
     ]
@@ -175,7 +177,7 @@ def turn_on_deck(
     channel = f"{_number(switch.transconductance_siemens)}*{overdrive}*tanh(v(d))"
     lines = [
         *_driver(loop, start_v, final_v),
-        *_bead_lines("b", loop.bead, "n3", "g"),
+        *_bead_lines("b", loop.bead, ("n3", "g")),
         f"Cgs g 0 {_number(switch.gate_source_f)} ic={_number(start_v)}",
         f"Cgd g d {_number(switch.gate_drain_f)} ic={_number(start_v - bus * (1.0 + _CLAMP_DROP))}",
         f"Vch d dc 0\nBch dc 0 I={channel}",
@@ -225,20 +227,18 @@ def _transient(duration_s: float, step_s: float) -> list[str]:
 def _bead_lines(
     name: str,
     bead: BeadLadder | None,
-    left: str,
-    right: str,
+    between: tuple[str, str],
     *,
     saturation: Saturation | None = None,
     with_capacitance: bool = True,
 ) -> list[str]:
     """The ladder between two nodes; a short where there is none."""
+    left, right = between
     if bead is None:
         return [f"R{name} {left} {right} {_number(_SHORT_OHM)}"]
     string = [
         (float(resistance), float(inductance))
-        for resistance, inductance in zip(
-            bead.section_resistance_ohm, bead.section_inductance_h, strict=True
-        )
+        for resistance, inductance in zip(bead.section_resistance_ohm, bead.section_inductance_h, strict=True)
     ]
     lines = list(_lead(f"{name}dc", left, f"{name}0", bead.dc_resistance_ohm, 0.0))
     lines += _lead(f"{name}s", f"{name}0", f"{name}1", 0.0, bead.series_inductance_h)
@@ -270,11 +270,13 @@ def _saturating(name: str, near: str, far: str, inductance_h: float, saturation:
 
 def _device(name: str, device: SwitchBranch, kick_v: float) -> Iterator[str]:
     yield from _lead(f"g{name}", "gj", f"p{name}", device.gate_resistance_ohm, device.gate_inductance_h)
-    yield from _bead_lines(f"b{name}_", device.bead, f"p{name}", f"g{name}")
+    yield from _bead_lines(f"b{name}_", device.bead, (f"p{name}", f"g{name}"))
     yield from _lead(f"d{name}", "dj", f"d{name}", device.drain_resistance_ohm, device.drain_inductance_h)
     yield from _lead(f"s{name}", f"s{name}", "0", device.source_resistance_ohm, device.source_inductance_h)
     if device.kelvin_inductance_h is not None:
-        yield from _lead(f"k{name}", f"s{name}", "k", device.kelvin_resistance_ohm, device.kelvin_inductance_h)
+        yield from _lead(
+            f"k{name}", f"s{name}", "k", device.kelvin_resistance_ohm, device.kelvin_inductance_h
+        )
     yield f"Cgs{name} g{name} s{name} {_number(device.gate_source_f)} ic={_number(kick_v)}"
     yield f"Cgd{name} g{name} d{name} {_number(device.gate_drain_f)} ic={_number(kick_v)}"
     yield f"Cds{name} d{name} s{name} {_number(device.drain_source_f)} ic=0"

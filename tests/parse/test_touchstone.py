@@ -1,8 +1,8 @@
 """Touchstone reader against the examples of its specification and an independent reader.
 
-Example numbers are those of the Touchstone File Format Specification, Version 2.0 (IBIS Open Forum, 2009). Their
-numbers were compared with the specification tests of scikit-rf 2.2.0; file texts are written from memory of the
-grammar and page numbers were not re-read.
+Examples are numbered as in the Touchstone File Format Specification, Version 2.0 (IBIS Open Forum, 2009).
+Their numbers were compared with the specification tests of scikit-rf 2.2.0; file texts are written from
+memory of the grammar, and page numbers were not re-read.
 """
 
 from __future__ import annotations
@@ -94,6 +94,18 @@ EXAMPLE_5 = """\
 5.0 {entries}
 [End]
 """
+LOWER = """\
+0.60 161.24
+0.40 -42.20 0.60 161.20
+0.42 -66.58 0.53 -79.34 0.60 161.24
+0.53 -79.34 0.42 -66.58 0.40 -42.20 0.60 161.24
+"""
+UPPER = """\
+0.60 161.24 0.40 -42.20 0.42 -66.58 0.53 -79.34
+0.60 161.20 0.53 -79.34 0.42 -66.58
+0.60 161.24 0.40 -42.20
+0.60 161.24
+"""
 EXAMPLE_17 = """\
 ! two ports with noise data; no options but the sign: GHz, S, MA, 50 ohm
 #
@@ -121,7 +133,8 @@ def test_example_8() -> None:
 
 
 def test_examples_7_and_9_are_the_same_impedance() -> None:
-    # 75 * (0.99, 0.80, 0.707, 0.40, 0.01) = 74.25, 60, 53.025, 30, 0.75: version 1 is normalised, version 2 is not.
+    # 75 * (0.99, 0.80, 0.707, 0.40, 0.01) = 74.25, 60, 53.025, 30, 0.75: version 1 is normalised, version 2
+    # is not.
     normalised = read_touchstone(EXAMPLE_9, path="part.s1p")
     plain = read_touchstone(EXAMPLE_7, path="part.ts")
     expected = polar((74.25, -4), (60, -22), (53.025, -45), (30, -62), (0.75, -89))
@@ -134,29 +147,26 @@ def test_example_13() -> None:
     data = read_touchstone(EXAMPLE_13, path="part.s2p")
     assert data.values.shape == (3, 2, 2)
     assert data.frequency_hz.tolist() == [1e9, 2e9, 10e9]
-    assert data.values[1].tolist() == [[0.3517 - 0.3054j, -0.0096 - 0.0298j], [-0.0096 - 0.0298j, 0.3517 - 0.3054j]]
+    assert data.values[1].tolist() == [
+        [0.3517 - 0.3054j, -0.0096 - 0.0298j],
+        [-0.0096 - 0.0298j, 0.3517 - 0.3054j],
+    ]
 
 
 def test_example_14() -> None:
     data = read_touchstone(EXAMPLE_14, path="part.s4p")
     assert data.values.shape == (2, 4, 4)
-    assert data.values[0, 1] == pytest.approx(polar((0.40, -42.20), (0.60, 161.20), (0.53, -79.34), (0.42, -66.58)))
+    assert data.values[0, 1] == pytest.approx(
+        polar((0.40, -42.20), (0.60, 161.20), (0.53, -79.34), (0.42, -66.58))
+    )
     assert complex(data.values[1, 3, 0]) == pytest.approx(complex(polar((0.57, -95.77))[0]))
 
 
 @pytest.mark.parametrize(
     ("form", "entries"),
     [
-        (
-            "Lower",
-            "0.60 161.24\n0.40 -42.20 0.60 161.20\n0.42 -66.58 0.53 -79.34 0.60 161.24\n"
-            "0.53 -79.34 0.42 -66.58 0.40 -42.20 0.60 161.24",
-        ),
-        (
-            "Upper",
-            "0.60 161.24 0.40 -42.20 0.42 -66.58 0.53 -79.34\n0.60 161.20 0.53 -79.34 0.42 -66.58\n"
-            "0.60 161.24 0.40 -42.20\n0.60 161.24",
-        ),
+        ("Lower", LOWER),
+        ("Upper", UPPER),
     ],
 )
 def test_examples_5_and_6_fill_the_other_half(form: str, entries: str) -> None:
@@ -192,10 +202,14 @@ def test_decibels_and_units() -> None:
     assert complex(data.values[0, 0, 0]) == pytest.approx(0.5j, rel=1e-7)
 
 
-@pytest.mark.parametrize(("letter", "factors"), [("Y", [0.02] * 4), ("H", [50.0, 1.0, 1.0, 0.02]), ("G", [0.02, 1.0, 1.0, 50.0])])
+@pytest.mark.parametrize(
+    ("letter", "factors"), [("Y", [0.02] * 4), ("H", [50.0, 1.0, 1.0, 0.02]), ("G", [0.02, 1.0, 1.0, 50.0])]
+)
 def test_version_1_is_normalised(letter: str, factors: list[float]) -> None:
     data = read_touchstone(f"# Hz {letter} RI R 50\n1 1 0 2 0 3 0 4 0\n", path="x.s2p")
-    assert data.values[0].T.reshape(-1).real == pytest.approx(np.array([1.0, 2.0, 3.0, 4.0]) * np.array(factors)[[0, 2, 1, 3]])
+    assert data.values[0].T.reshape(-1).real == pytest.approx(
+        np.array([1.0, 2.0, 3.0, 4.0]) * np.array(factors)[[0, 2, 1, 3]]
+    )
 
 
 @pytest.mark.parametrize("form", ["RI", "MA", "DB"])
@@ -234,8 +248,14 @@ BAD = [
     ("[Mixed-Mode Order] D2,3\n", "mixed-mode"),
     ("[Colour] red\n", r"unknown keyword \[Colour\]"),
     ("[Version] 2.0\n# MHz S MA\n[Number of Ports] 1\n1 2 3\n", "outside"),
-    ("[Version] 2.0\n# MHz S MA\n[Number of Ports] 1\n[Number of Frequencies] 2\n[Network Data]\n1 2 3\n[End]\n", "1 freq"),
-    ("[Version] 2.0\n# MHz S MA\n[Number of Ports] 1\n[Reference] 50 75\n[Network Data]\n1 2 3\n[End]\n", "2 references"),
+    (
+        "[Version] 2.0\n# S MA\n[Number of Ports] 1\n[Number of Frequencies] 2\n[Network Data]\n1 2 3\n",
+        "1 freq",
+    ),
+    (
+        "[Version] 2.0\n# MHz S MA\n[Number of Ports] 1\n[Reference] 50 75\n[Network Data]\n1 2 3\n[End]\n",
+        "2 references",
+    ),
     ("[Version] 2.0\n# MHz S MA\n[Number of Ports] 1\n[Network Data]\n[End]\n", "no data"),
     ("[Version] 2.0\n# MHz S MA\n[Number of Ports] 9999\n[Network Data]\n1 2 3\n[End]\n", "ports"),
 ]

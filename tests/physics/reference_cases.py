@@ -7,15 +7,21 @@ element values below. None of it used the code under test.
 
 from __future__ import annotations
 
+import dataclasses
 import json
 from pathlib import Path
-from typing import Any
+from typing import TYPE_CHECKING, Any
 
 import numpy as np
 
 from gatecheck.physics.bead import BeadLadder, parallel_bead
 from gatecheck.physics.gate_loop import GateLoop
 from gatecheck.physics.switch_circuit import SwitchBranch
+
+if TYPE_CHECKING:
+    from collections.abc import Callable
+
+    from numpy.typing import NDArray
 
 REFERENCE = Path(__file__).parent.parent / "reference"
 
@@ -69,7 +75,8 @@ def synthetic_ferrite(frequency_hz: Any) -> Any:
     return 0.15 + 1.0 / (1.0 / (s * 5e-9 * permeability) + s * 0.5e-12)
 
 
-# Worked cases: 80 V trench FET; 650 V superjunction; 1200 V SiC; 650 V GaN; 1200 V IGBT module. All invented. SI.
+# Worked cases: 80 V trench FET; 650 V superjunction; 1200 V SiC; 650 V GaN; 1200 V IGBT module. All invented.
+# SI.
 CASES: dict[str, dict[str, Any]] = {
     "A": {
         "off_v": 0.0, "on_v": 12.0, "cgs": 5.6e-9, "cgd": 60e-12, "cds": 1.0e-9, "qg": 95e-9, "qgd": 16e-9,
@@ -128,6 +135,12 @@ def case_loop(name: str, edge: str, bead: BeadLadder | None = None) -> GateLoop:
 def case_swing(name: str, edge: str) -> tuple[float, float]:
     off_v, on_v = CASES[name]["off_v"], CASES[name]["on_v"]
     return (off_v, on_v) if edge == "on" else (on_v, off_v)
+
+
+def by_gain(
+    poles: Callable[[SwitchBranch], NDArray[np.complex128]], device: SwitchBranch
+) -> Callable[[NDArray[np.float64]], NDArray[np.complex128]]:
+    return lambda gain: poles(dataclasses.replace(device, transconductance_siemens=gain))
 
 
 def case_switch(name: str, edge: str, bead: BeadLadder | None = None) -> SwitchBranch:

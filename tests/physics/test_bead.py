@@ -88,9 +88,9 @@ def test_corners_give_the_same_as_one_by_one() -> None:
     )
     single = [
         parallel_bead(
-            dc_resistance_ohm=0.05, parallel_resistance_ohm=r, inductance_h=l, capacitance_f=0.5e-12
+            dc_resistance_ohm=0.05, parallel_resistance_ohm=r, inductance_h=x, capacitance_f=0.5e-12
         )
-        for r, l in zip(parallel, inductance, strict=True)
+        for r, x in zip(parallel, inductance, strict=True)
     ]
     assert crossover_hz(together).tolist() == [float(crossover_hz(bead)) for bead in single]
     grid = impedance_ohm(together, frequency_hz=np.array([1e6, 1e8])[:, None])

@@ -4,7 +4,13 @@ import numpy as np
 import pytest
 
 from gatecheck.physics.bead import crossover_hz, impedance_ohm
-from gatecheck.physics.bead_bias import bias_constants, biased_bead, flux_vs, impedance_left_ratio
+from gatecheck.physics.bead_bias import (
+    bias_constants,
+    biased_bead,
+    flux_vs,
+    impedance_left_ratio,
+    saturation_current_a,
+)
 from tests.physics.reference_cases import B3
 
 
@@ -36,9 +42,7 @@ BIASED = [
 
 @pytest.mark.parametrize(("current", "at_1", "at_10", "at_100"), BIASED)
 def test_biased_bead(current: float, at_1: float, at_10: float, at_100: float) -> None:
-    bead = biased_bead(
-        B3, current_a=current, inductance_half_current_a=0.5, resistance_half_current_a=1.5
-    )
+    bead = biased_bead(B3, current_a=current, inductance_half_current_a=0.5, resistance_half_current_a=1.5)
     sizes = np.abs(impedance_ohm(bead, frequency_hz=np.array([1e6, 1e7, 1e8])))
     assert sizes == pytest.approx(np.array([at_1, at_10, at_100]), rel=1e-4, abs=6e-5)
 
@@ -46,9 +50,7 @@ def test_biased_bead(current: float, at_1: float, at_10: float, at_100: float) -
 def test_bias_moves_the_crossover_up_first() -> None:
     # The inductance goes at half the current at which the resistance does (own reasoning from Snoek's limit).
     currents = np.array([0.0, 0.25, 0.5, 1.0])
-    bead = biased_bead(
-        B3, current_a=currents, inductance_half_current_a=0.5, resistance_half_current_a=1.5
-    )
+    bead = biased_bead(B3, current_a=currents, inductance_half_current_a=0.5, resistance_half_current_a=1.5)
     assert np.all(np.diff(crossover_hz(bead)) > 0.0)
 
 
@@ -73,6 +75,16 @@ def test_constants_refuse_what_fits_nothing(first: float, second: float, current
     )
     assert np.isnan(half)
     assert np.isnan(exponent)
+
+
+@pytest.mark.parametrize(("turns", "expected_a"), [(5, 0.2), (1, 1.1)])
+def test_order_of_the_saturation_current(turns: int, expected_a: float) -> None:
+    # 0.35 T, mu_i 500, path 2 mm: 560 A/m, hence 0.2 A with five turns and 1.1 A with one (evaluated apart).
+    found = saturation_current_a(
+        saturation_t=0.35, initial_permeability_ratio=500.0, path_length_m=2e-3, turns_count=turns
+    )
+    assert float(found) == pytest.approx(expected_a, rel=0.12)
+    assert float(found) * turns / 2e-3 == pytest.approx(557.0, rel=1e-3)
 
 
 def test_flux_is_the_integral_of_the_inductance() -> None:

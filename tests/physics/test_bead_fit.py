@@ -5,6 +5,7 @@ import pytest
 from hypothesis import given, settings
 from hypothesis import strategies as st
 
+from gatecheck.parse.touchstone import read_touchstone
 from gatecheck.physics.bead import BeadLadder, impedance_ohm
 from gatecheck.physics.bead_fit import (
     BeadFit,
@@ -13,6 +14,7 @@ from gatecheck.physics.bead_fit import (
     fit_to_points,
     fitted_impedance_ohm,
 )
+from gatecheck.physics.scattering import Topology, measured_impedance
 from tests.physics.reference_cases import B1, B3, B4, synthetic_ferrite
 
 FREQUENCY_HZ = np.geomspace(1e6, 1e9, 61)
@@ -32,9 +34,7 @@ def test_the_synthetic_ferrite_itself() -> None:
     assert impedance == pytest.approx(np.array(expected), rel=5e-6)
 
 
-@pytest.mark.parametrize(
-    ("sections", "worst"), [(4, 0.21), (7, 0.024), (10, 0.0004), (13, 0.0034)]
-)
+@pytest.mark.parametrize(("sections", "worst"), [(4, 0.21), (7, 0.024), (10, 0.0004), (13, 0.0034)])
 def test_error_falls_with_sections(sections: int, worst: float) -> None:
     # The same formulation with scipy's nnls and a bounded search gave 21, 2.4, 0.04 and 0.3 %.
     fit = fit_to_impedance(
@@ -69,7 +69,8 @@ def test_a_corner_between_the_grid() -> None:
 
 
 def test_reading_noise_is_averaged() -> None:
-    # With 3 % reading noise and ten sections the error against the truth stays near 1 % rms (computed with scipy: 0.8).
+    # With 3 % reading noise and ten sections the error against the truth stays near 1 % rms (computed with
+    # scipy: 0.8).
     rng = np.random.default_rng(11)
     truth = synthetic_ferrite(FREQUENCY_HZ)
     noise = (rng.normal(size=61) + 1j * rng.normal(size=61)) / np.sqrt(2.0)
@@ -125,7 +126,10 @@ def test_every_fit_is_passive(
     core = 1.0 + permeability / (1.0 + 1j * FREQUENCY_HZ / relaxation_hz) ** steepness
     measured = 0.1 + 1.0 / (1.0 / (s * 4e-9 * core) + s * 0.4e-12)
     fit = fit_to_impedance(
-        frequency_hz=FREQUENCY_HZ, measured_ohm=measured, dc_resistance_ohm=0.1, sections_count=sections
+        frequency_hz=FREQUENCY_HZ,
+        measured_ohm=np.asarray(measured, dtype=np.complex128),
+        dc_resistance_ohm=0.1,
+        sections_count=sections,
     )
     assert fit.bead.section_resistance_ohm.min() > 0.0
     assert fit.bead.section_inductance_h.min() > 0.0
@@ -179,3 +183,26 @@ def test_no_word_beyond_a_factor_of_two() -> None:
     asked = fitted_impedance_ohm(fit, frequency_hz=np.array([4.9e6, 5.1e6, 5.9e8, 6.1e8]))
     assert np.isnan(asked).tolist() == [True, False, False, True]
     assert (fit.lowest_hz, fit.highest_hz) == (5e6, 6e8)
+
+
+def test_from_file_to_bead() -> None:
+    """A series-through measurement with pads, read from text, becomes a bead that a simulation can use."""
+    truth = synthetic_ferrite(FREQUENCY_HZ)
+    pad = 2j * np.pi * FREQUENCY_HZ * 0.3e-12
+    # Chain matrix of pad, part, pad; then S in 50 ohm: S11 = (A + B/Z - C Z - D) / sum, S21 = 2 / sum.
+    a = 1.0 + truth * pad
+    c = 2.0 * pad + truth * pad**2
+    total = 2.0 * a + truth / 50.0 + c * 50.0
+    s11, s21 = (truth / 50.0 - c * 50.0) / total, 2.0 / total
+    rows = [
+        " ".join(f"{value:.9g}" for value in (f, *(part for z in (x, y, y, x) for part in (z.real, z.imag))))
+        for f, x, y in zip(FREQUENCY_HZ, s11, s21, strict=True)
+    ]
+    data = read_touchstone("\n".join(["# Hz S RI R 50", *rows]), path="bead.s2p")
+    measured = measured_impedance(scattering_ratio=data.values, reference_ohm=data.reference_ohm)
+    assert measured.topology is Topology.SERIES
+    fit = fit_to_impedance(
+        frequency_hz=data.frequency_hz, measured_ohm=measured.impedance_ohm, dc_resistance_ohm=0.15
+    )
+    found = fitted_impedance_ohm(fit, frequency_hz=FREQUENCY_HZ)
+    assert np.abs(found / truth - 1.0).max() < 0.01

@@ -13,7 +13,7 @@ from tests.physics.reference_cases import B1, B4
 
 
 def ladder(sections: int, *, series_h: float, capacitance_f: float) -> BeadLadder:
-    place = np.arange(sections)
+    place = np.arange(sections, dtype=np.float64)
     return BeadLadder(
         dc_resistance_ohm=np.array(0.1),
         section_resistance_ohm=5.0 + 20.0 * place,

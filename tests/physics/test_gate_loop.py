@@ -23,8 +23,9 @@ from gatecheck.physics.ringing import damping_ratio, overshoot_ratio, peak_curre
 from gatecheck.physics.trajectory import first_maxima, value_at
 from tests.physics.reference_cases import BEADS, LOOPS, loop, plain_loop
 
-# Loop, bead, driver ramp ns: peak A, its time ns, overshoot %, 10-90 ns, 50 % ns, ring MHz, decrement of the first two
-# maxima (nan: none). ngspice-39, trapezoidal, 5 or 20 ps steps; G1 to G4 also closed form, beads also scipy.
+# Loop, bead, driver ramp ns: peak A, its time ns, overshoot %, 10-90 ns, 50 % ns, ring MHz, decrement of the
+# first two maxima (nan: none). ngspice-39, trapezoidal, 5 or 20 ps steps; G1 to G4 also closed form, beads
+# also scipy.
 NAN = float("nan")
 EDGES = [
     ("G1", None, 0.0, 3.57021, 9.104, 30.709, 9.7900, 8.508, 21.1754, 2.36123),
@@ -91,7 +92,8 @@ def test_ring_mode(name: str, bead: str, decay: float, ring_mhz: float) -> None:
 
 
 def test_the_bead_capacitance_mode_is_no_ring() -> None:
-    # Loop inductance and C_b of B1 ring at 1.7 GHz, less damped than the gate itself, but the gate does not move.
+    # Loop inductance and C_b of B1 ring at 1.7 GHz, less damped than the gate itself, but the gate does not
+    # move.
     poles = loop_poles_per_s(loop("G2", BEADS["B1"]))
     fast = poles[np.argmax(np.abs(poles))]
     assert abs(fast.imag) > 2.0 * np.pi * 1e9
@@ -117,12 +119,16 @@ def test_delay_and_rise_time_that_a_bead_adds(bead: str, added_ns: float, slower
     assert float(with_bead.rise_time_s - without.rise_time_s) == pytest.approx(slower_ns * 1e-9, rel=3e-3)
 
 
-@pytest.mark.parametrize(("bead", "estimate", "exact"), [("B2", 22.3, 18.5), ("B3", 47.0, 41.2), ("B1", 66.0, 62.2)])
+@pytest.mark.parametrize(
+    ("bead", "estimate", "exact"), [("B2", 22.3, 18.5), ("B3", 47.0, 41.2), ("B1", 66.0, 62.2)]
+)
 def test_bead_as_inductance_is_a_cautious_estimate(bead: str, estimate: float, exact: float) -> None:
     # L + L_bead in the closed form, evaluated apart.
     _, _, resistance, inductance, capacitance = LOOPS["G2"]
     added = float(BEADS[bead].section_inductance_h.sum())
-    zeta = damping_ratio(resistance_ohm=resistance, inductance_h=inductance + added, capacitance_f=capacitance)
+    zeta = damping_ratio(
+        resistance_ohm=resistance, inductance_h=inductance + added, capacitance_f=capacitance
+    )
     assert 100.0 * float(overshoot_ratio(loop_damping_ratio=zeta)) == pytest.approx(estimate, rel=1e-2)
     _, figures = edge("G2", bead)
     assert 100.0 * float(figures.overshoot_ratio) == pytest.approx(exact, rel=5e-3)
@@ -138,10 +144,9 @@ HEAT = [
 ]
 
 
-@pytest.mark.parametrize(("name", "bead", "resistor_nj", "dc_nj", "ferrite_nj", "rms_a"), HEAT)
-def test_heat_of_an_edge(
-    name: str, bead: str, resistor_nj: float, dc_nj: float, ferrite_nj: float, rms_a: float
-) -> None:
+@pytest.mark.parametrize("row", HEAT, ids=lambda row: f"{row[0]}+{row[1]}")
+def test_heat_of_an_edge(row: tuple[str, str, float, float, float, float]) -> None:
+    name, bead, resistor_nj, dc_nj, ferrite_nj, rms_a = row
     heat = edge_heat(loop(name, BEADS[bead]), step_v=12.0)
     assert float(heat.resistance_j) == pytest.approx(resistor_nj * 1e-9, rel=1e-4)
     assert float(heat.bead_dc_j) == pytest.approx(dc_nj * 1e-9, rel=2e-4)
@@ -204,7 +209,8 @@ def test_energy_balance_of_an_edge(network: GateLoop, step_v: float) -> None:
 @given(network=NETWORK)
 @settings(max_examples=20, deadline=None)
 def test_heat_equals_the_sampled_current(network: GateLoop) -> None:
-    # Second opinion: Simpson's integral of the squared current. Samples thin out, so the ring must die in a few periods.
+    # Second opinion: Simpson's integral of the squared current. Samples thin out, so the ring must die in a
+    # few periods.
     assume(float(ring_mode(network).damping_ratio) > 0.15)
     response = step_response(network)
     grid = response.current.time_s
@@ -235,18 +241,16 @@ def test_scaling(network: GateLoop, impedance: float, time: float) -> None:
             capacitance_f=bead.capacitance_f / impedance * time,
         ),
     )
-    before, after = (
-        edge_figures(step_response(one), start_v=0.0, final_v=10.0) for one in (network, scaled)
-    )
+    before, after = (edge_figures(step_response(one), start_v=0.0, final_v=10.0) for one in (network, scaled))
     assert float(after.peak_current_a) * impedance == pytest.approx(float(before.peak_current_a), rel=1e-6)
     assert float(after.overshoot_ratio) == pytest.approx(float(before.overshoot_ratio), rel=1e-6, abs=1e-9)
     assert float(after.half_time_s) == pytest.approx(time * float(before.half_time_s), rel=1e-6)
-    assert float(ring_mode(scaled).damping_ratio) == pytest.approx(float(ring_mode(network).damping_ratio), rel=1e-6)
+    assert float(ring_mode(scaled).damping_ratio) == pytest.approx(
+        float(ring_mode(network).damping_ratio), rel=1e-6
+    )
 
 
-@given(
-    resistance=st.floats(0.2, 30.0), inductance=st.floats(1e-9, 1e-7), capacitance=st.floats(1e-10, 3e-8)
-)
+@given(resistance=st.floats(0.2, 30.0), inductance=st.floats(1e-9, 1e-7), capacitance=st.floats(1e-10, 3e-8))
 @settings(max_examples=60, deadline=None)
 def test_equals_the_closed_form_without_bead(
     resistance: float, inductance: float, capacitance: float
@@ -293,7 +297,9 @@ def test_corners_give_the_same_as_one_by_one() -> None:
             for field in dataclasses.fields(EdgeFigures):
                 value = getattr(figures, field.name)[row, column]
                 assert float(value) == pytest.approx(float(getattr(single, field.name)), rel=1e-9)
-            assert float(damping[row, column]) == pytest.approx(float(ring_mode(alone).damping_ratio), rel=1e-9)
+            assert float(damping[row, column]) == pytest.approx(
+                float(ring_mode(alone).damping_ratio), rel=1e-9
+            )
 
 
 def test_time_to_a_level() -> None:

@@ -19,8 +19,8 @@ SWITCH = HardSwitch(
 )
 NEAR_NOTHING_H = 1e-12  # the loop must have an inductance; this one delays by less than a picosecond
 
-# R, L, bead: loss uJ, current 10-90 ns, voltage 90-10 ns, gate current at half the voltage A, time to 10 % of the
-# current ns. ngspice-39 on the same device law with an ideal clamp diode, 0 to 12 V, record of 600 ns.
+# R, L, bead: loss uJ, current 10-90 ns, voltage 90-10 ns, gate current at half the voltage A, time to 10 % of
+# the current ns. ngspice-39 on the same device law with an ideal clamp diode, 0 to 12 V, record of 600 ns.
 ROWS = [
     (5.0, NEAR_NOTHING_H, None, 47.96, 1.602, 6.92, 1.386, 6.271),
     (10.0, NEAR_NOTHING_H, None, 90.50, 3.204, 13.78, 0.6965, 12.541),

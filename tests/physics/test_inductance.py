@@ -35,8 +35,9 @@ def test_round_wire_with_the_current_in_its_skin() -> None:
 
 
 def test_long_wire_limit_of_the_handbooks() -> None:
-    # Rosa 1908: L = 2 l [ln(2 l / r) - 3/4] in centimetres, for l much longer than r (from memory, page not re-read).
-    # Here 10 m of 1 mm radius: 2000 cm (ln 20000 - 0.75) = 18307 cm, one centimetre being one nanohenry.
+    # Rosa 1908: L = 2 l [ln(2 l / r) - 3/4] in centimetres, for l much longer than r (from memory, page not
+    # re-read). Here 10 m of 1 mm radius: 2000 cm (ln 20000 - 0.75) = 18307 cm, one centimetre being one
+    # nanohenry.
     found = float(round_wire_h(length_m=10.0, radius_m=1 * MM)) / NH
     assert found == pytest.approx(2000.0 * (math.log(20000.0) - 0.75), rel=2e-5)
 
@@ -50,7 +51,9 @@ def test_parallel_filaments(distance_mm: float, expected_nh: float) -> None:
 
 def test_offset_filaments() -> None:
     # Closed form and numerical quadrature, apart.
-    found = offset_filaments_h(first_length_m=10 * MM, second_length_m=5 * MM, gap_m=2 * MM, distance_m=1 * MM)
+    found = offset_filaments_h(
+        first_length_m=10 * MM, second_length_m=5 * MM, gap_m=2 * MM, distance_m=1 * MM
+    )
     assert float(found) == pytest.approx(0.603102 * NH, rel=1e-6)
 
 
@@ -88,8 +91,9 @@ def test_rectangular_bar(
 
 @pytest.mark.parametrize(("aspect", "printed"), [(0.0, 0.22313), (1.0, 0.22352)])
 def test_geometric_mean_distance_of_a_rectangle(aspect: float, printed: float) -> None:
-    # Printed for a thin strip and a square, 0.44705 of its side (Maxwell; Rosa and Grover 1912; page from memory).
-    # Second opinion: mean of ln(distance) over the section, midpoints of 200 cells a side with the cell's own GMD.
+    # Printed for a thin strip and a square, 0.44705 of its side (Maxwell; Rosa and Grover 1912; page from
+    # memory). Second opinion: mean of ln(distance) over the section, midpoints of 200 cells a side with the
+    # cell's own GMD.
     count = 400 if aspect == 0.0 else 60
     rows = 1 if aspect == 0.0 else count
     x, y = np.meshgrid(np.arange(count), np.arange(rows))
@@ -98,13 +102,19 @@ def test_geometric_mean_distance_of_a_rectangle(aspect: float, printed: float) -
     mean = np.exp(np.mean(np.log(np.where(distance > 0.0, distance, own))))
     girth = count if rows == 1 else 2 * count
     assert mean / girth == pytest.approx(printed, rel=1e-3)
-    assert RECTANGLE_GMD_RATIO == pytest.approx(printed, rel=2e-3)
+    assert pytest.approx(printed, rel=2e-3) == RECTANGLE_GMD_RATIO
 
 
-@given(length=st.floats(1.0, 50.0), other=st.floats(1.0, 50.0), gap=st.floats(-20.0, 20.0), distance=st.floats(0.1, 20.0))
+@given(
+    length=st.floats(1.0, 50.0),
+    other=st.floats(1.0, 50.0),
+    gap=st.floats(-20.0, 20.0),
+    distance=st.floats(0.1, 20.0),
+)
 @settings(max_examples=30, deadline=None)
 def test_offset_filaments_by_quadrature(length: float, other: float, gap: float, distance: float) -> None:
-    # Neumann's integral: 1e-7 times the double integral of 1 / r, inner part closed, outer by 400 point Gauss.
+    # Neumann's integral: 1e-7 times the double integral of 1 / r, inner part closed, outer by 400 point
+    # Gauss.
     points, weights = np.polynomial.legendre.leggauss(400)
     along = 0.5 * length * (points + 1.0)
     start, end = length + gap - along, length + gap + other - along

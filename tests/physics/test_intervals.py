@@ -1,7 +1,6 @@
 from __future__ import annotations
 
-from collections.abc import Mapping
-from typing import Any
+from typing import TYPE_CHECKING, Any
 
 import numpy as np
 import pytest
@@ -10,6 +9,9 @@ from hypothesis import strategies as st
 
 from gatecheck.physics.intervals import INNER_POINTS_COUNT, Interval, propagate, rank_inputs
 from gatecheck.physics.ringing import damping_ratio
+
+if TYPE_CHECKING:
+    from collections.abc import Mapping
 
 SIGNS = {"external": 1, "internal": 1, "driver": 1, "loop": -1, "input": 1}
 
@@ -46,14 +48,17 @@ def test_damping_of_a_hardly_known_switch(external: float, low: float, high: flo
 
 
 def test_best_question_at_one_ohm() -> None:
-    # Widths in nepers, evaluated apart: 2.77 as it stands; 1.86 with C_iss known, 2.17 with any of the next three.
+    # Widths in nepers, evaluated apart: 2.77 as it stands; 1.86 with C_iss known, 2.17 with any of the next
+    # three.
     assert propagate(zeta, inputs(1.0), signs=SIGNS).interval.width_neper() == pytest.approx(2.77, abs=0.01)
     ranked = rank_inputs(zeta, inputs(1.0), signs=SIGNS)
     assert ranked[0].name == "input"
     assert ranked[0].fixed_au == pytest.approx(4.38e-9, rel=1e-3)
     assert ranked[0].interval.low_au == pytest.approx(0.466, rel=2e-3)
     assert ranked[0].interval.high_au == pytest.approx(3.00, rel=3e-3)
-    assert [gain.interval.width_neper() for gain in ranked[:4]] == pytest.approx([1.86, 2.17, 2.17, 2.17], abs=0.01)
+    assert [gain.interval.width_neper() for gain in ranked[:4]] == pytest.approx(
+        [1.86, 2.17, 2.17, 2.17], abs=0.01
+    )
     assert ranked[-1].name == "external"
 
 
@@ -72,9 +77,17 @@ def test_known_inputs_are_no_question() -> None:
 
 def test_corners_are_named() -> None:
     spread = propagate(zeta, inputs(1.0), signs=SIGNS)
-    assert spread.at_low == {"external": 0.99, "internal": 0.5, "driver": 0.5, "loop": 20e-9, "input": 1.76e-9}
+    assert spread.at_low == {
+        "external": 0.99,
+        "internal": 0.5,
+        "driver": 0.5,
+        "loop": 20e-9,
+        "input": 1.76e-9,
+    }
     assert spread.at_high["loop"] == 6e-9
-    assert spread.interval.nominal_au == pytest.approx(float(zeta({k: v.nominal_au for k, v in inputs(1.0).items()})))
+    assert spread.interval.nominal_au == pytest.approx(
+        float(zeta({k: v.nominal_au for k, v in inputs(1.0).items()}))
+    )
 
 
 @given(external=st.floats(0.0, 20.0))
@@ -84,6 +97,17 @@ def test_sampling_finds_the_corners_of_a_monotone_function(external: float) -> N
     assert sampled.sampled
     assert sampled.interval.low_au == pytest.approx(by_signs.low_au)
     assert sampled.interval.high_au == pytest.approx(by_signs.high_au)
+
+
+def test_some_inputs_signed_and_the_rest_sampled() -> None:
+    # a - b + 1 - (x - 1)^2 rises with a, falls with b, has a hump in x: at most 3 - 1 + 1, least 1 - 2 + 0.
+    spans = {"a": Interval(1.0, 2.0, 3.0), "x": Interval(0.0, 0.5, 2.0), "b": Interval(1.0, 1.5, 2.0)}
+    spread = propagate(lambda v: v["a"] - v["b"] + 1.0 - (v["x"] - 1.0) ** 2, spans, signs={"a": 1, "b": -1})
+    assert spread.sampled
+    assert spread.interval.low_au == pytest.approx(-1.0)
+    assert spread.interval.high_au == pytest.approx(3.0, abs=0.01)
+    assert spread.interval.nominal_au == pytest.approx(1.25)
+    assert (spread.at_high["a"], spread.at_high["b"]) == (3.0, 1.0)
 
 
 def test_sampling_finds_a_hump_inside() -> None:
@@ -120,7 +144,8 @@ def test_the_same_points_every_time() -> None:
 
 
 def test_inner_points_are_spread_evenly() -> None:
-    # In every input, any quarter of its logarithmic range holds a quarter of the inner points, give or take four.
+    # In every input, any quarter of its logarithmic range holds a quarter of the inner points, give or take
+    # four.
     def look(values: Mapping[str, Any]) -> Any:
         for name in ("internal", "loop", "input"):
             low, high = inputs(1.0)[name].low_au, inputs(1.0)[name].high_au

@@ -25,7 +25,9 @@ def test_gate_power() -> None:
 def test_resistor_gets_its_share() -> None:
     # 4.7 of 7.2 ohm: 7.442 mW and 0.3721 uJ (evaluated apart).
     share = 4.7 / 7.2
-    assert float(resistor_power_w(gate_power_w=22.8e-3, share_ratio=share)) == pytest.approx(7.442e-3, rel=1e-4)
+    assert float(resistor_power_w(gate_power_w=22.8e-3, share_ratio=share)) == pytest.approx(
+        7.442e-3, rel=1e-4
+    )
     assert float(resistor_pulse_j(gate_charge_c=95e-9, step_v=12.0, share_ratio=share)) == pytest.approx(
         0.3721e-6, rel=1e-4
     )
@@ -68,5 +70,7 @@ def test_bootstrap() -> None:
 
 
 def test_arrays_broadcast() -> None:
-    found = gate_power_w(gate_charge_c=np.array([[1e-9], [2e-9]]), step_v=np.array([5.0, 10.0]), switching_hz=1e6)
+    found = gate_power_w(
+        gate_charge_c=np.array([[1e-9], [2e-9]]), step_v=np.array([5.0, 10.0]), switching_hz=1e6
+    )
     assert found == pytest.approx(np.array([[5e-3, 10e-3], [10e-3, 20e-3]]))

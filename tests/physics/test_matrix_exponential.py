@@ -9,7 +9,10 @@ from gatecheck.physics.matrix_exponential import matrix_exponential, quadratic_i
 
 
 @given(
-    seed=st.integers(0, 10_000), size=st.integers(1, 9), scale=st.floats(1e-6, 30.0), spread=st.floats(0.0, 3.0)
+    seed=st.integers(0, 10_000),
+    size=st.integers(1, 9),
+    scale=st.floats(1e-6, 30.0),
+    spread=st.floats(0.0, 3.0),
 )
 @settings(deadline=None)
 def test_equals_scipy(seed: int, size: int, scale: float, spread: float) -> None:
@@ -25,7 +28,8 @@ def test_equals_scipy(seed: int, size: int, scale: float, spread: float) -> None
 
 
 def test_defective_matrix() -> None:
-    # Critical damping has a double pole and no full set of eigenvectors: exp([[a,1],[0,a]] t) = e^at [[1,t],[0,1]].
+    # Critical damping has a double pole and no full set of eigenvectors: exp([[a,1],[0,a]] t) = e^at
+    # [[1,t],[0,1]].
     found = matrix_exponential(state_matrix_per_s=np.array([[-2.0, 1.0], [0.0, -2.0]]), time_s=np.array(1.5))
     assert found == pytest.approx(np.exp(-3.0) * np.array([[1.0, 1.5], [0.0, 1.0]]), rel=1e-13)
 
@@ -33,7 +37,9 @@ def test_defective_matrix() -> None:
 def test_rotation_over_many_turns() -> None:
     # A lossless circuit: exp of a rotation generator is a rotation, after a thousand turns too.
     omega = 2.0 * np.pi * 1000.25
-    found = matrix_exponential(state_matrix_per_s=np.array([[0.0, -omega], [omega, 0.0]]), time_s=np.array(1.0))
+    found = matrix_exponential(
+        state_matrix_per_s=np.array([[0.0, -omega], [omega, 0.0]]), time_s=np.array(1.0)
+    )
     assert found == pytest.approx(np.array([[0.0, -1.0], [1.0, 0.0]]), abs=1e-11)
 
 

@@ -1,7 +1,6 @@
 from __future__ import annotations
 
-from collections.abc import Callable
-from typing import Any
+from typing import TYPE_CHECKING, Any
 
 import numpy as np
 import pytest
@@ -20,13 +19,16 @@ from gatecheck.physics.miller import (
 from gatecheck.physics.ringing import damping_ratio
 from tests.physics.reference_cases import BEADS, plain_loop
 
+if TYPE_CHECKING:
+    from collections.abc import Callable
+
 # V/ns, C_gd pF, R, L nH, C_iss nF, bus V: peak V; closed form evaluated apart and ngspice-39 to 1e-5.
 BUMPS = [
-    pytest.param(50, 20, 3.0, 10, 1.5, 400, 3.40825, id="M2"),
-    pytest.param(50, 20, 1.0, 10, 1.5, 400, 2.82219, id="M3"),
-    pytest.param(10, 60, 6.0, 15, 3.0, 48, 0.90723, id="M4"),
-    pytest.param(80, 10, 4.5, 8, 1.2, 800, 3.47151, id="M5"),
-    pytest.param(100, 1.5, 2.0, 3, 0.2, 400, 0.65604, id="M6"),
+    pytest.param((50, 20, 3.0, 10, 1.5, 400, 3.40825), id="M2"),
+    pytest.param((50, 20, 1.0, 10, 1.5, 400, 2.82219), id="M3"),
+    pytest.param((10, 60, 6.0, 15, 3.0, 48, 0.90723), id="M4"),
+    pytest.param((80, 10, 4.5, 8, 1.2, 800, 3.47151), id="M5"),
+    pytest.param((100, 1.5, 2.0, 3, 0.2, 400, 0.65604), id="M6"),
 ]
 
 
@@ -40,15 +42,14 @@ def test_bump_without_inductance() -> None:
         resistance_ohm=3.0, input_capacitance_f=1.5e-9, gate_drain_f=20e-12, slope_v_per_s=50e9, swing_v=400.0
     )
     assert float(found) == pytest.approx(2.49296, rel=1e-5)
-    assert float(charge_divider_v(gate_drain_charge_c=400.0 * 20e-12, input_capacitance_f=1.5e-9)) == pytest.approx(
-        5.333, rel=1e-4
-    )
+    assert float(
+        charge_divider_v(gate_drain_charge_c=400.0 * 20e-12, input_capacitance_f=1.5e-9)
+    ) == pytest.approx(5.333, rel=1e-4)
 
 
-@pytest.mark.parametrize(("slope", "drain_pf", "resistance", "loop_nh", "input_nf", "bus_v", "peak_v"), BUMPS)
-def test_bump_with_inductance(
-    slope: float, drain_pf: float, resistance: float, loop_nh: float, input_nf: float, bus_v: float, peak_v: float
-) -> None:
+@pytest.mark.parametrize("row", BUMPS)
+def test_bump_with_inductance(row: tuple[float, ...]) -> None:
+    slope, drain_pf, resistance, loop_nh, input_nf, bus_v, peak_v = row
     network = plain_loop(resistance, loop_nh * 1e-9, input_nf * 1e-9)
     closed = bump_v(network, gate_drain_f=drain_pf * 1e-12, slope_v_per_s=slope * 1e9, swing_v=bus_v)
     stepped = bump_from_curve_v(network, slope_v_per_s=slope * 1e9, **constant(drain_pf * 1e-12, bus_v))
@@ -82,7 +83,10 @@ def test_closed_form_equals_the_exact_response(
 def test_without_inductance_both_forms_meet(resistance: float, capacitance: float, slope: float) -> None:
     inductance = 1e-6 * resistance**2 * capacitance
     with_little = bump_v(
-        plain_loop(resistance, inductance, capacitance), gate_drain_f=20e-12, slope_v_per_s=slope, swing_v=400.0
+        plain_loop(resistance, inductance, capacitance),
+        gate_drain_f=20e-12,
+        slope_v_per_s=slope,
+        swing_v=400.0,
     )
     without = bump_without_inductance_v(
         resistance_ohm=resistance,
@@ -126,7 +130,10 @@ def test_pieces_of_a_constant_curve_do_not_matter() -> None:
     network = plain_loop(4.0, 10e-9, 3e-9, BEADS["B4"])
     one = bump_from_curve_v(network, slope_v_per_s=20e9, **constant(30e-12, 400.0))
     many = bump_from_curve_v(
-        network, slope_v_per_s=20e9, drain_v=np.array([0.0, 1.0, 30.0, 222.0, 400.0]), gate_drain_f=np.full(5, 30e-12)
+        network,
+        slope_v_per_s=20e9,
+        drain_v=np.array([0.0, 1.0, 30.0, 222.0, 400.0]),
+        gate_drain_f=np.full(5, 30e-12),
     )
     assert float(one) == pytest.approx(float(many), rel=1e-6)
 
@@ -145,7 +152,7 @@ def test_critical_slope_and_resistance() -> None:
     # Closed form solved apart: 50.2217 V/ns (simple bound 41.667), 3.01330 ohm, 5.48136 V/ns, and none.
     slope = lowest_reaching(by_slope(3.0, 20e-12, 1.5e-9, 400.0), margin_v=2.5, largest_au=1e12)
     assert float(slope) == pytest.approx(50.2217e9, rel=1e-5)
-    assert 2.5 / (3.0 * 20e-12) == pytest.approx(41.667e9, rel=1e-4)
+    assert pytest.approx(41.667e9, rel=1e-4) == 2.5 / (3.0 * 20e-12)
     other = lowest_reaching(by_slope(10.0, 60e-12, 3e-9, 400.0), margin_v=3.0, largest_au=1e12)
     assert float(other) == pytest.approx(5.48136e9, rel=1e-5)
     none = lowest_reaching(by_slope(3.0, 20e-12, 1.5e-9, 400.0), margin_v=6.0, largest_au=1e15)
@@ -173,4 +180,6 @@ def test_no_margin_is_reached_at_once() -> None:
 
 def test_common_source_voltage() -> None:
     # 15 nH at 10 A/ns would be 150 V (a power module maker's article quotes the same numbers).
-    assert float(common_source_v(source_inductance_h=15e-9, current_slope_a_per_s=10e9)) == pytest.approx(150.0)
+    assert float(common_source_v(source_inductance_h=15e-9, current_slope_a_per_s=10e9)) == pytest.approx(
+        150.0
+    )

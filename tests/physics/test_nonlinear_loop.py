@@ -1,11 +1,11 @@
 from __future__ import annotations
 
 import dataclasses
+from typing import TYPE_CHECKING
 
 import numpy as np
 import pytest
 
-from gatecheck.physics.bead import BeadLadder
 from gatecheck.physics.bead_bias import flux_vs
 from gatecheck.physics.gate_loop import edge_figures, ring_mode, step_response
 from gatecheck.physics.nonlinear_loop import (
@@ -16,6 +16,9 @@ from gatecheck.physics.nonlinear_loop import (
 )
 from gatecheck.physics.trajectory import first_maxima
 from tests.physics.reference_cases import BEADS, loop, plain_loop
+
+if TYPE_CHECKING:
+    from gatecheck.physics.bead import BeadLadder
 
 VOLTAGE_V = np.linspace(-6.0, 20.0, 1301)
 # C(v) rises from 2 to 4 nF around 4 V.
@@ -63,10 +66,9 @@ SATURATING = [
 ]
 
 
-@pytest.mark.parametrize(("name", "bead", "half_a", "peak_a", "overshoot", "rise_ns", "half_ns"), SATURATING)
-def test_saturating_bead(
-    name: str, bead: str, half_a: float, peak_a: float, overshoot: float, rise_ns: float, half_ns: float
-) -> None:
+@pytest.mark.parametrize("row", SATURATING, ids=lambda row: f"{row[0]}+{row[1]}")
+def test_saturating_bead(row: tuple[str, str, float, float, float, float, float]) -> None:
+    name, bead, half_a, peak_a, overshoot, rise_ns, half_ns = row
     response = nonlinear_edge(
         loop(name, without_capacitance(BEADS[bead])),
         start_v=0.0,
@@ -113,7 +115,8 @@ def test_a_straight_curve_is_a_capacitance() -> None:
 
 
 def test_a_plateau_holds_the_gate() -> None:
-    # 20 nC at a constant 5 V through 10 ohm from 12 V: 20 nC / 0.7 A, and the current stands still there (Q = I t).
+    # 20 nC at a constant 5 V through 10 ohm from 12 V: 20 nC / 0.7 A, and the current stands still there (Q =
+    # I t).
     plateau = ChargeCurve(
         charge_c=np.array([0.0, 10e-9, 30e-9, 45e-9]), voltage_v=np.array([0.0, 5.0, 5.0, 12.0])
     )
@@ -128,9 +131,7 @@ def test_corners_give_the_same_as_one_by_one() -> None:
     resistances, halves = np.array([2.0, 5.5, 9.0]), np.array([0.3, 0.5, 2.0])
     together = edge_figures(
         nonlinear_edge(
-            dataclasses.replace(
-                loop("G2", without_capacitance(BEADS["B3"])), resistance_ohm=resistances
-            ),
+            dataclasses.replace(loop("G2", without_capacitance(BEADS["B3"])), resistance_ohm=resistances),
             start_v=0.0,
             final_v=12.0,
             charge=dataclasses.replace(CURVE, charge_ratio=np.array([0.5, 1.0, 2.0])),
@@ -157,12 +158,10 @@ def test_corners_give_the_same_as_one_by_one() -> None:
         assert float(together.extreme_v[place]) == pytest.approx(float(alone.extreme_v), rel=1e-4)
 
 
-def test_energy_balance_with_saturation() -> None:
-    """What the driver gives is kept by the gate or lost in R and the bead; the bead's flux returns to zero."""
+def test_charge_balance_with_saturation() -> None:
+    """All the charge the driver gives ends on the gate, and the bead's flux returns to zero."""
     network = loop("G2", without_capacitance(BEADS["B3"]))
-    response = nonlinear_edge(
-        network, start_v=0.0, final_v=12.0, saturation=Saturation(half_current_a=0.5)
-    )
+    response = nonlinear_edge(network, start_v=0.0, final_v=12.0, saturation=Saturation(half_current_a=0.5))
     time_s, current = response.current.time_s, 12.0 * response.current.value_au
     charge = float(np.sum(0.5 * (current[1:] + current[:-1]) * np.diff(time_s)))
     # Six periods of a ring of this damping leave less than a thousandth of it.

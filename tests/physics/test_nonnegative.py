@@ -1,12 +1,16 @@
 from __future__ import annotations
 
+from typing import TYPE_CHECKING
+
 import numpy as np
 import pytest
 from hypothesis import given
 from hypothesis import strategies as st
-from numpy.typing import NDArray
 
 from gatecheck.physics.nonnegative import nonnegative_least_squares
+
+if TYPE_CHECKING:
+    from numpy.typing import NDArray
 
 
 def problem(seed: int, rows: int, columns: int) -> tuple[NDArray[np.float64], NDArray[np.float64]]:

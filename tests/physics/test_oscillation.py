@@ -14,6 +14,7 @@ from gatecheck.physics.oscillation import (
     sweep_transconductance,
 )
 from gatecheck.physics.switch_circuit import SwitchBranch, odd_mode_poles_per_s, single_switch_poles_per_s
+from tests.physics.reference_cases import by_gain
 from tests.physics.test_switch_circuit import SET_O2, SET_P, SET_Q, N, P
 
 THIRD = dataclasses.replace(
@@ -93,8 +94,8 @@ def test_estimate_is_cautious(device: SwitchBranch, estimate: float, exact: floa
     assert cure(device) == pytest.approx(exact, rel=2e-3)
 
 
-# Odd mode of two 1200 V SiC switches: C_gd pF, C_ds pF, own R, Kelvin R, k of the bead or None; growth 1e6/s, MHz, and
-# the unstable g_m from (a 400 point sweep of eigenvalues written apart, grid 1.5 % wide).
+# Odd mode of two 1200 V SiC switches: C_gd pF, C_ds pF, own R, Kelvin R, k of the bead or None; growth 1e6/s,
+# MHz, and the unstable g_m from (a 400 point sweep of eigenvalues written apart, grid 1.5 % wide).
 SIC_ODD = [
     (12, 160, 0.0, 1.0, None, 278.4, 206.9, 0.4954, 35.0),
     (12, 160, 3.3, 1.0, None, 148.1, 205.6, 1.345, 35.0),
@@ -123,7 +124,7 @@ def test_sweep_finds_growth_and_window(row: tuple[float, ...]) -> None:
         kelvin_resistance_ohm=kelvin_ohm,
     )
     found = sweep_transconductance(
-        lambda gain: odd_mode_poles_per_s(dataclasses.replace(device, transconductance_siemens=gain)),
+        by_gain(odd_mode_poles_per_s, device),
         maximum_siemens=35.0,
     )
     assert float(found.growth_per_s) == pytest.approx(growth * 1e6, rel=1e-3)
@@ -135,7 +136,7 @@ def test_sweep_finds_growth_and_window(row: tuple[float, ...]) -> None:
 def test_sweep_of_a_stable_switch_has_no_window() -> None:
     device = dataclasses.replace(SET_Q, gate_resistance_ohm=10.0)
     found = sweep_transconductance(
-        lambda gain: single_switch_poles_per_s(dataclasses.replace(device, transconductance_siemens=gain)),
+        by_gain(single_switch_poles_per_s, device),
         maximum_siemens=40.0,
     )
     assert float(found.growth_per_s) < 0.0
@@ -149,7 +150,7 @@ def test_sweep_of_many_corners_at_once() -> None:
         SET_Q, gate_resistance_ohm=resistances, gate_drain_f=drains, source_inductance_h=2 * N
     )
     found = sweep_transconductance(
-        lambda gain: odd_mode_poles_per_s(dataclasses.replace(device, transconductance_siemens=gain)),
+        by_gain(odd_mode_poles_per_s, device),
         maximum_siemens=np.full((1, 1), 40.0),
     )
     assert found.growth_per_s.shape == (2, 3)
@@ -170,9 +171,11 @@ def test_sweep_of_many_corners_at_once() -> None:
 def test_sweep_equals_a_dense_one() -> None:
     # Second opinion: 4000 transconductances instead of 24.
     gains = np.geomspace(0.1, 200.0, 4000)
-    dense = fastest_mode(poles_per_s=odd_mode_poles_per_s(dataclasses.replace(SET_O2, transconductance_siemens=gains)))[0]
+    dense = fastest_mode(
+        poles_per_s=odd_mode_poles_per_s(dataclasses.replace(SET_O2, transconductance_siemens=gains))
+    )[0]
     found = sweep_transconductance(
-        lambda gain: odd_mode_poles_per_s(dataclasses.replace(SET_O2, transconductance_siemens=gain)),
+        by_gain(odd_mode_poles_per_s, SET_O2),
         maximum_siemens=200.0,
     )
     assert float(found.growth_per_s) == pytest.approx(float(dense.max()), rel=3e-3)

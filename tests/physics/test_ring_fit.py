@@ -14,7 +14,7 @@ from tests.physics.reference_cases import loop
 
 @dataclasses.dataclass(frozen=True)
 class Record:
-    """A ring of amplitude 1, phase 0.3, offset 0.05; bounds from the numeric Fisher matrix, evaluated apart."""
+    """A ring of amplitude 1, phase 0.3, offset 0.05; bounds from the numeric Fisher matrix, made apart."""
 
     ring_mhz: float
     decay: float  # nepers per microsecond
@@ -68,8 +68,12 @@ def test_scatter_reaches_the_bound(name: str) -> None:
     assert abs(frequencies.mean() - record.ring_mhz) < 0.3e-3 * record.frequency_bound_khz
     assert abs(decays.mean() - record.decay) < 0.3 * record.decay_bound
     # The standard errors that come with each fit are those of the bound.
-    assert np.mean([ring.ring_error_hz for ring in rings]) == pytest.approx(1e3 * record.frequency_bound_khz, rel=0.03)
-    assert np.mean([ring.decay_error_per_s for ring in rings]) == pytest.approx(1e6 * record.decay_bound, rel=0.03)
+    assert np.mean([ring.ring_error_hz for ring in rings]) == pytest.approx(
+        1e3 * record.frequency_bound_khz, rel=0.03
+    )
+    assert np.mean([ring.decay_error_per_s for ring in rings]) == pytest.approx(
+        1e6 * record.decay_bound, rel=0.03
+    )
     damping = np.array([ring.damping_ratio for ring in rings])
     assert damping.std() == pytest.approx(np.mean([ring.damping_error_ratio for ring in rings]), rel=0.15)
     assert np.mean([ring.noise_au for ring in rings]) == pytest.approx(record.noise, rel=0.02)

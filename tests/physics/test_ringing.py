@@ -48,8 +48,8 @@ def test_plain_loops(name: str, peak_a: float, time_ns: float, overshoot_percent
 def test_damping_ratios() -> None:
     # Closed form evaluated apart.
     found = [
-        float(damping_ratio(resistance_ohm=r, inductance_h=l, capacitance_f=c))
-        for _, _, r, l, c in LOOPS.values()
+        float(damping_ratio(resistance_ohm=r, inductance_h=x, capacitance_f=c))
+        for _, _, r, x, c in LOOPS.values()
     ]
     assert found == pytest.approx([0.35178, 1.28986, 0.46233, 0.28402], rel=2e-5)
 
@@ -76,9 +76,7 @@ def test_peak_is_smooth_through_critical_damping() -> None:
     assert time == pytest.approx(1.0 - (zeta - 1.0) / 3.0, rel=1e-6)
 
 
-@given(
-    resistance=st.floats(0.1, 50.0), inductance=st.floats(1e-10, 1e-6), capacitance=st.floats(1e-11, 1e-7)
-)
+@given(resistance=st.floats(0.1, 50.0), inductance=st.floats(1e-10, 1e-6), capacitance=st.floats(1e-11, 1e-7))
 def test_needed_resistance_gives_the_damping(
     resistance: float, inductance: float, capacitance: float
 ) -> None:
@@ -89,9 +87,7 @@ def test_needed_resistance_gives_the_damping(
     assert float(needed) == pytest.approx(resistance)
 
 
-@given(
-    resistance=st.floats(0.1, 50.0), inductance=st.floats(1e-10, 1e-6), capacitance=st.floats(1e-11, 1e-7)
-)
+@given(resistance=st.floats(0.1, 50.0), inductance=st.floats(1e-10, 1e-6), capacitance=st.floats(1e-11, 1e-7))
 def test_bead_limit_is_where_the_damping_falls_to_the_minimum(
     resistance: float, inductance: float, capacitance: float
 ) -> None:
@@ -111,10 +107,14 @@ def test_bead_limit_is_where_the_damping_falls_to_the_minimum(
 
 def test_decrement() -> None:
     # 2.10 V to 1.05 V: ln 2, zeta 0.1097; 2.10 to 0.30 V over four periods: 0.4865, 0.0772 (evaluated apart).
-    assert float(damping_from_decrement_ratio(log_decrement_neper=np.log(2.0))) == pytest.approx(0.1097, abs=5e-5)
+    assert float(damping_from_decrement_ratio(log_decrement_neper=np.log(2.0))) == pytest.approx(
+        0.1097, abs=5e-5
+    )
     over_four = np.log(2.10 / 0.30) / 4.0
     assert float(over_four) == pytest.approx(0.4865, abs=5e-5)
-    assert float(damping_from_decrement_ratio(log_decrement_neper=over_four)) == pytest.approx(0.0772, abs=5e-5)
+    assert float(damping_from_decrement_ratio(log_decrement_neper=over_four)) == pytest.approx(
+        0.0772, abs=5e-5
+    )
 
 
 @given(zeta=st.floats(1e-6, 0.999))
@@ -128,10 +128,13 @@ def test_no_decrement_without_ring() -> None:
 
 
 def test_two_capacitor_identification() -> None:
-    # 42.0 MHz, 33.0 MHz with 1.0 nF added: 1.613 nF, 8.90 nH; 8.79 nH with the damping of 0.1097 (evaluated apart).
+    # 42.0 MHz, 33.0 MHz with 1.0 nF added: 1.613 nF, 8.90 nH; 8.79 nH with the damping of 0.1097 (evaluated
+    # apart).
     capacitance = capacitance_from_added_f(added_capacitance_f=1e-9, ring_hz=42e6, ring_with_added_hz=33e6)
     assert float(capacitance) == pytest.approx(1.613e-9, rel=5e-4)
-    assert float(inductance_from_ring_h(capacitance_f=capacitance, ring_hz=42e6)) == pytest.approx(8.90e-9, rel=1e-3)
+    assert float(inductance_from_ring_h(capacitance_f=capacitance, ring_hz=42e6)) == pytest.approx(
+        8.90e-9, rel=1e-3
+    )
     damped = inductance_from_ring_h(capacitance_f=capacitance, ring_hz=42e6, loop_damping_ratio=0.1097)
     assert float(damped) == pytest.approx(8.79e-9, rel=1e-3)
 
@@ -152,6 +155,25 @@ def test_identification_is_touchy(reading_error: float, low_nf: float, high_nf: 
         ring_with_added_hz=33e6 * (1.0 - reading_error * signs),
     )
     assert (corners * 1e9).tolist() == pytest.approx([low_nf, high_nf], abs=0.012)
+
+
+@pytest.mark.parametrize(
+    ("input_pf", "shift"), [(3000.0, -0.0017), (240.0, -0.020), (200.0, -0.024), (65.0, -0.069)]
+)
+def test_a_probe_shifts_the_ring(input_pf: float, shift: float) -> None:
+    # 10 pF of a passive probe beside the node's own capacitance (evaluated apart).
+    with_probe, without = (
+        natural_frequency_hz(inductance_h=10e-9, capacitance_f=(input_pf + probe_pf) * 1e-12)
+        for probe_pf in (10.0, 0.0)
+    )
+    assert float(with_probe / without) - 1.0 == pytest.approx(shift, abs=7e-4)
+
+
+@pytest.mark.parametrize(("lead_nh", "artefact_mhz"), [(150.0, 130.0), (20.0, 356.0), (6.0, 650.0)])
+def test_a_probe_rings_by_itself(lead_nh: float, artefact_mhz: float) -> None:
+    # 10 pF with its ground lead; the first row stands in a probe manual.
+    found = natural_frequency_hz(inductance_h=lead_nh * 1e-9, capacitance_f=10e-12)
+    assert float(found) == pytest.approx(artefact_mhz * 1e6, rel=2e-3)
 
 
 def test_a_frequency_that_does_not_fall_identifies_nothing() -> None:

@@ -1,6 +1,6 @@
 from __future__ import annotations
 
-from typing import Any
+from typing import TYPE_CHECKING, Any
 
 import numpy as np
 import pytest
@@ -18,6 +18,9 @@ from gatecheck.physics.scattering import (
     shunt_transmission_impedance_ohm,
 )
 from tests.physics.reference_cases import B1, B2
+
+if TYPE_CHECKING:
+    from collections.abc import Callable
 
 FREQUENCY_HZ = np.geomspace(1e6, 1e9, 61)
 FIFTY = np.array([50.0, 50.0])
@@ -69,7 +72,7 @@ def test_error_gain(impedance: float, series_percent: float, shunt_percent: floa
 @pytest.mark.parametrize("topology", Topology)
 def test_error_gain_is_the_derivative(topology: Topology) -> None:
     impedance, step = 20.0, 1e-6
-    readings = {
+    readings: dict[Topology, tuple[float, Callable[[float], float], float]] = {
         Topology.SERIES: (100.0 / 120.0, lambda s: 100.0 * (1.0 - s) / s, 100.0 / 120.0),
         Topology.SHUNT: (40.0 / 90.0, lambda s: 25.0 * s / (1.0 - s), 40.0 / 90.0),
         Topology.ONE_PORT: (-30.0 / 70.0, lambda s: 50.0 * (1.0 + s) / (1.0 - s), 1.0),
@@ -80,7 +83,9 @@ def test_error_gain_is_the_derivative(topology: Topology) -> None:
     assert float(gain) == pytest.approx(slope, rel=1e-6)
 
 
-def network(part_ohm: Any, *, series: bool, pads_f: float = 0.0, reference: tuple[float, float] = (50.0, 50.0)) -> Any:
+def network(
+    part_ohm: Any, *, series: bool, pads_f: float = 0.0, reference: tuple[float, float] = (50.0, 50.0)
+) -> Any:
     """Scattering parameters made with scikit-rf from a chain matrix: pads, part, pads."""
     from skrf import network as skrf
 
@@ -109,9 +114,7 @@ def test_topology_and_impedance_from_clean_data(series: bool, reference: tuple[f
 
 def test_pads_are_taken_off() -> None:
     part = impedance_ohm(B1, frequency_hz=FREQUENCY_HZ)
-    found = measured_impedance(
-        scattering_ratio=network(part, series=True, pads_f=1e-12), reference_ohm=FIFTY
-    )
+    found = measured_impedance(scattering_ratio=network(part, series=True, pads_f=1e-12), reference_ohm=FIFTY)
     assert found.with_pads
     assert found.topology is Topology.SERIES
     assert found.impedance_ohm == pytest.approx(part, rel=1e-9)
@@ -123,9 +126,7 @@ def test_noise_does_not_turn_the_topology() -> None:
     noise = 0.002 * (rng.normal(size=(61, 2, 2)) + 1j * rng.normal(size=(61, 2, 2)))
     part = impedance_ohm(B2, frequency_hz=FREQUENCY_HZ)
     for series, expected in ((True, Topology.SERIES), (False, Topology.SHUNT)):
-        found = measured_impedance(
-            scattering_ratio=network(part, series=series) + noise, reference_ohm=FIFTY
-        )
+        found = measured_impedance(scattering_ratio=network(part, series=series) + noise, reference_ohm=FIFTY)
         assert found.topology is expected
         assert not found.doubtful
 

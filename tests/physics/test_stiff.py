@@ -107,7 +107,11 @@ def test_corners_have_their_own_steps() -> None:
 
 def test_trajectory_between_steps() -> None:
     solution = integrate(
-        VanDerPol(0.0), start_au=np.array([1.0, 0.0]), duration_s=6.0, scale_au=np.ones(2), tolerance_ratio=1e-7
+        VanDerPol(0.0),
+        start_au=np.array([1.0, 0.0]),
+        duration_s=6.0,
+        scale_au=np.ones(2),
+        tolerance_ratio=1e-7,
     )
     position = state_trajectory(solution, state_index=0)  # without damping: cos t
     for time_s in (0.3, 1.7, 4.4):

@@ -1,12 +1,12 @@
 from __future__ import annotations
 
 import dataclasses
+from typing import TYPE_CHECKING
 
 import numpy as np
 import pytest
 from hypothesis import given, settings
 from hypothesis import strategies as st
-from numpy.typing import NDArray
 
 from gatecheck.physics.bead import BeadLadder
 from gatecheck.physics.oscillation import dominant_growth_per_s
@@ -18,6 +18,9 @@ from gatecheck.physics.switch_circuit import (
     single_switch_poles_per_s,
 )
 from tests.physics.reference_cases import BEADS
+
+if TYPE_CHECKING:
+    from numpy.typing import NDArray
 
 N, P = 1e-9, 1e-12
 SET_P = SwitchBranch(
@@ -56,10 +59,12 @@ def test_common_source_inductance_damps_it() -> None:
 
 def test_odd_mode_grows_in_spite_of_a_common_resistor() -> None:
     # O2: eigenvalues of a matrix written apart; ngspice-39 .tran of v_a - v_b gives +140.07 and 216.009.
-    assert spectrum(odd_mode_poles_per_s(SET_O2)) == pytest.approx([140.105 + 216.010j, -12.095, -1967.57], rel=1e-5, abs=5e-4)
+    assert spectrum(odd_mode_poles_per_s(SET_O2)) == pytest.approx(
+        [140.105 + 216.010j, -12.095, -1967.57], rel=1e-5, abs=5e-4
+    )
     both = spectrum(parallel_poles_per_s([SET_O2, SET_O2], SHARED))
     assert both[0] == pytest.approx(140.105 + 216.010j, rel=1e-5)
-    assert -9.043 == pytest.approx(both[1].real, rel=1e-4)
+    assert pytest.approx(both[1].real, rel=1e-4) == -9.043
     assert any(abs(pole - (-211.30 + 61.797j)) < 0.01 for pole in both)
 
 
@@ -178,7 +183,7 @@ def test_routh_agrees_on_stability(device: SwitchBranch) -> None:
 def test_common_and_differential_spectra_compose_the_whole(
     *, device: SwitchBranch, bead: str | None, source_h: float, kelvin: bool, count: int
 ) -> None:
-    """n equal devices: the common mode sees n times the shared leads, the n - 1 odd modes see none of them."""
+    """The common mode of n equal devices sees n times the shared leads, the n - 1 odd modes none."""
     device = dataclasses.replace(
         device,
         bead=BEADS[bead] if bead else None,
@@ -194,9 +199,7 @@ def test_common_and_differential_spectra_compose_the_whole(
     )
     whole = np.sort_complex(parallel_poles_per_s([device] * count, SHARED))
     parts = np.sort_complex(
-        np.concatenate(
-            [single_switch_poles_per_s(common), *[odd_mode_poles_per_s(device)] * (count - 1)]
-        )
+        np.concatenate([single_switch_poles_per_s(common), *[odd_mode_poles_per_s(device)] * (count - 1)])
     )
     assert whole.shape == parts.shape
     # Multiple poles split by the root of rounding, so compare what symmetric functions of them say.
@@ -238,10 +241,14 @@ def test_a_kelvin_lead_takes_the_source_inductance_out_of_the_gate_loop() -> Non
         drain_inductance_h=6 * N,
         source_inductance_h=0.0,
     )
-    found, expected = (
-        np.sort_complex(single_switch_poles_per_s(device)) for device in (kelvin, separate)
-    )
+    found, expected = (np.sort_complex(single_switch_poles_per_s(device)) for device in (kelvin, separate))
     assert found == pytest.approx(expected, rel=1e-9)
+
+
+@pytest.mark.parametrize("devices", [[], [SET_O2, dataclasses.replace(SET_O2, kelvin_inductance_h=5 * N)]])
+def test_devices_must_be_of_one_kind(devices: list[SwitchBranch]) -> None:
+    with pytest.raises(ValueError, match="Kelvin"):
+        parallel_poles_per_s(devices, SHARED)
 
 
 def test_corners_give_the_same_as_one_by_one() -> None:
@@ -267,7 +274,9 @@ def test_bead_with_series_inductance_and_without_capacitance() -> None:
         series_inductance_h=np.array(5 * N),
         capacitance_f=np.array(0.0),
     )
-    with_bead = dominant_growth_per_s(poles_per_s=single_switch_poles_per_s(dataclasses.replace(SET_P, bead=bare)))
+    with_bead = dominant_growth_per_s(
+        poles_per_s=single_switch_poles_per_s(dataclasses.replace(SET_P, bead=bare))
+    )
     with_lead = dominant_growth_per_s(
         poles_per_s=single_switch_poles_per_s(
             dataclasses.replace(SET_P, gate_resistance_ohm=0.7, gate_inductance_h=11 * N)

@@ -18,10 +18,9 @@ from gatecheck.physics.switching_time import (
 ROWS = [(5.0, 42.30, 1.6015, 6.857, 1.400, 6.271), (10.0, 84.60, 3.203, 13.714, 0.700, 12.541)]
 
 
-@pytest.mark.parametrize(("resistance", "loss_uj", "rise_ns", "fall_ns", "current_a", "start_ns"), ROWS)
-def test_times_and_loss(
-    resistance: float, loss_uj: float, rise_ns: float, fall_ns: float, current_a: float, start_ns: float
-) -> None:
+@pytest.mark.parametrize("row", ROWS)
+def test_times_and_loss(row: tuple[float, ...]) -> None:
+    resistance, loss_uj, rise_ns, fall_ns, current_a, start_ns = row
     constant = resistance * 3e-9
     level = float(plateau_v(threshold_v=4.0, load_a=20.0, transconductance_siemens=20.0))
     assert level == 5.0
@@ -45,7 +44,9 @@ def test_loss_grows_with_resistance() -> None:
 
 
 def test_off_edge_current_counts_from_the_other_rail() -> None:
-    assert float(plateau_current_a(driver_v=-4.0, plateau_v=8.0, resistance_ohm=5.5)) == pytest.approx(12.0 / 5.5)
+    assert float(plateau_current_a(driver_v=-4.0, plateau_v=8.0, resistance_ohm=5.5)) == pytest.approx(
+        12.0 / 5.5
+    )
 
 
 def test_a_level_beyond_the_driver_is_never_reached() -> None:
@@ -57,7 +58,9 @@ def test_a_level_beyond_the_driver_is_never_reached() -> None:
 
 def test_drain_slope() -> None:
     # 1.4 A into 30 pF is 46.7 V/ns (I = C dV/dt).
-    assert float(drain_slope_v_per_s(plateau_current_a=1.4, gate_drain_f=30e-12)) == pytest.approx(46.67e9, rel=1e-3)
+    assert float(drain_slope_v_per_s(plateau_current_a=1.4, gate_drain_f=30e-12)) == pytest.approx(
+        46.67e9, rel=1e-3
+    )
 
 
 def test_source_inductance_delay() -> None:

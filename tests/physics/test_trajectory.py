@@ -112,7 +112,9 @@ def test_equal_neighbours_do_no_harm() -> None:
         time_s=one.time_s[order], value_au=one.value_au[order], slope_au_per_s=one.slope_au_per_s[order]
     )
     plain = Trajectory(time_s=one.time_s, value_au=one.value_au, slope_au_per_s=one.slope_au_per_s)
-    assert [float(part) for part in maximum(doubled)] == pytest.approx([float(part) for part in maximum(plain)])
+    assert [float(part) for part in maximum(doubled)] == pytest.approx(
+        [float(part) for part in maximum(plain)]
+    )
     assert float(first_crossing_s(doubled, level_au=0.5)) == pytest.approx(
         float(first_crossing_s(plain, level_au=0.5))
     )

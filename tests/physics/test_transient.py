@@ -1,11 +1,13 @@
 from __future__ import annotations
 
+from typing import TYPE_CHECKING
+
 import numpy as np
 import pytest
 from hypothesis import given, settings
 from hypothesis import strategies as st
-from numpy.typing import NDArray
 
+from gatecheck.physics.trajectory import value_at
 from gatecheck.physics.transient import (
     LinearResponse,
     final_state_au,
@@ -13,7 +15,9 @@ from gatecheck.physics.transient import (
     observed,
     record_length_s,
 )
-from gatecheck.physics.trajectory import value_at
+
+if TYPE_CHECKING:
+    from numpy.typing import NDArray
 
 
 def passive(seed: int, size: int) -> NDArray[np.float64]:

@@ -1,7 +1,6 @@
 from __future__ import annotations
 
-from collections.abc import Callable
-from typing import Any
+from typing import TYPE_CHECKING, Any
 
 import numpy as np
 import pytest
@@ -12,6 +11,9 @@ from gatecheck.physics.two_port import (
     scattering_from_impedance_ratio,
     scattering_from_inverse_hybrid_ratio,
 )
+
+if TYPE_CHECKING:
+    from collections.abc import Callable
 
 
 def passive_scattering(seed: int) -> Any:
@@ -57,6 +59,6 @@ def test_three_ports_of_impedance_and_admittance_agree() -> None:
     reference = np.array([50.0, 75.0, 10.0])
     by_impedance = scattering_from_impedance_ratio(matrix_ohm=impedance, reference_ohm=reference)
     by_admittance = scattering_from_admittance_ratio(
-        matrix_siemens=np.linalg.inv(impedance), reference_ohm=reference
+        matrix_siemens=np.asarray(np.linalg.inv(impedance), dtype=np.complex128), reference_ohm=reference
     )
     assert by_impedance == pytest.approx(by_admittance, rel=1e-10, abs=1e-13)
