@@ -52,18 +52,14 @@ def _pulled_back(
     matrix: RealArray, target: RealArray, solution: RealArray, active: NDArray[np.bool_]
 ) -> RealArray:
     """Unconstrained solution on the active unknowns; those that would turn negative leave it (in place)."""
-    while active.any():
+    while True:
         trial = np.zeros(solution.size)
         trial[active] = np.linalg.lstsq(matrix[:, active], target, rcond=None)[0]
-        negative = active & (trial <= 0.0)
-        if not negative.any():
+        negative = np.flatnonzero(active & (trial <= 0.0))
+        if not negative.size:
             return trial
-        way = solution[negative] / (solution[negative] - trial[negative])
-        solution = solution + float(way.min(initial=1.0)) * (trial - solution)
-        leaving = negative & (solution <= _ROUNDING * np.abs(solution).max(initial=0.0))
-        if not leaving.any():  # rounding left the blocking unknown a hair above zero
-            leaving = np.zeros(active.size, dtype=bool)
-            leaving[np.flatnonzero(negative)[int(np.argmin(way))]] = True
-        active &= ~leaving
+        fall = solution[negative] - trial[negative]  # zero only where both are
+        way = np.where(fall > 0.0, solution[negative] / np.where(fall > 0.0, fall, 1.0), 0.0)
+        solution = solution + float(way.min()) * (trial - solution)
+        active[negative[way <= way.min()]] = False
         solution = np.where(active, solution, 0.0)
-    return np.zeros(solution.size)

@@ -22,7 +22,9 @@ _PENCIL_SHARE = 0.4  # pencil length in parts of the record, near the optimum of
 _RING_ORDER, _TAIL_ORDER = 3, 5  # a pair and an offset; two more real modes for a settling tail
 _ROUNDS = 60  # of the least squares; our choice
 _FIRST_DAMPING, _RELAX, _TIGHTEN = 1e-3, 0.3, 10.0  # Levenberg-Marquardt control; our choice
-_MOST_DECAY = 700.0  # nepers over the record, near the end of a double's range
+_MOST_DECAY = 300.0  # nepers over the record; its square still fits a double
+_LEAST_COLUMN = 1e-150  # of the Jacobian, where a parameter has lost all effect
+_MOST_CONDITION = 1e6  # of the scaled Jacobian, beyond which its square is rounding; our choice
 _DONE = 1e-14  # relative gain of a round that ends the search; our choice
 
 
@@ -127,6 +129,7 @@ def _pencil_pole(values: RealArray, order: int) -> complex:
     basis = right[:order].T
     modes = np.linalg.eigvals(np.linalg.lstsq(basis[:-1], basis[1:], rcond=None)[0])
     rates = np.log(modes[np.abs(modes) > 0.0].astype(np.complex128))
+    rates = rates[np.abs(rates.real) * values.size < _MOST_DECAY]
     powers = np.exp(rates[None, :] * np.arange(values.size)[:, None])
     strength = np.abs(np.linalg.lstsq(powers, values.astype(np.complex128), rcond=None)[0])
     oscillating = (rates.imag > 0.0) & (rates.imag < math.pi)
@@ -167,7 +170,7 @@ def _refined(values: RealArray, parameters: RealArray) -> tuple[RealArray, RealA
     residual, jacobian = _model(values, parameters)
     cost, damping = float(residual @ residual), _FIRST_DAMPING
     for _ in range(_ROUNDS):
-        size = np.linalg.norm(jacobian, axis=0)
+        size = np.maximum(np.linalg.norm(jacobian, axis=0), _LEAST_COLUMN)
         scaled = jacobian / size
         normal = scaled.T @ scaled
         step = np.linalg.solve(normal + damping * np.eye(size.size), scaled.T @ residual) / size
@@ -190,10 +193,19 @@ def _refined(values: RealArray, parameters: RealArray) -> tuple[RealArray, RealA
     return parameters, residual, jacobian
 
 
+def _inverse(jacobian: RealArray) -> RealArray:
+    """Inverse of J^T J, refused where the record does not determine every parameter."""
+    size = np.linalg.norm(jacobian, axis=0)
+    if not np.all(size > 0.0) or np.linalg.cond(jacobian / size) > _MOST_CONDITION:
+        raise NoRingError("the record does not determine the ring")
+    inverse = np.linalg.inv((jacobian / size).T @ (jacobian / size))
+    return np.asarray(inverse / (size[:, None] * size[None, :]))
+
+
 def _ring(parameters: RealArray, residual: RealArray, jacobian: RealArray, *, step_s: float) -> Ring:
     amplitude, decay, omega, phase, offset = (float(value) for value in parameters)
     variance = float(residual @ residual) / max(residual.size - parameters.size, 1)
-    covariance = variance * np.linalg.inv(jacobian.T @ jacobian)
+    covariance = variance * _inverse(jacobian)
     modulus = math.hypot(decay, omega)
     # d zeta / d alpha = omega^2 / |s|^3, d zeta / d omega = -alpha omega / |s|^3
     slope = np.array([omega**2, -decay * omega]) / modulus**3

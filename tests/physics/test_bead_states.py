@@ -4,7 +4,7 @@ import dataclasses
 
 import numpy as np
 import pytest
-from hypothesis import given
+from hypothesis import given, settings
 from hypothesis import strategies as st
 
 from gatecheck.physics.bead import BeadLadder, impedance_ohm
@@ -53,6 +53,7 @@ def test_states_have_the_ladder_impedance(bead: BeadLadder, count: int, frequenc
     series_h=st.sampled_from([0.0, 3e-9]),
     capacitance_f=st.sampled_from([0.0, 0.5e-12]),
 )
+@settings(deadline=None)
 def test_states_only_dissipate(sections: int, series_h: float, capacitance_f: float) -> None:
     # A passive network's dissipation matrix, the symmetric part with the port in front, is never positive.
     states = bead_states(ladder(sections, series_h=series_h, capacitance_f=capacitance_f))

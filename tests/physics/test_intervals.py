@@ -4,7 +4,7 @@ from typing import TYPE_CHECKING, Any
 
 import numpy as np
 import pytest
-from hypothesis import given
+from hypothesis import given, settings
 from hypothesis import strategies as st
 
 from gatecheck.physics.intervals import INNER_POINTS_COUNT, Interval, propagate, rank_inputs
@@ -91,6 +91,7 @@ def test_corners_are_named() -> None:
 
 
 @given(external=st.floats(0.0, 20.0))
+@settings(deadline=None)
 def test_sampling_finds_the_corners_of_a_monotone_function(external: float) -> None:
     by_signs = propagate(zeta, inputs(external), signs=SIGNS).interval
     sampled = propagate(zeta, inputs(external))

@@ -4,7 +4,7 @@ from typing import TYPE_CHECKING
 
 import numpy as np
 import pytest
-from hypothesis import given
+from hypothesis import given, settings
 from hypothesis import strategies as st
 
 from gatecheck.physics.nonnegative import nonnegative_least_squares
@@ -20,6 +20,7 @@ def problem(seed: int, rows: int, columns: int) -> tuple[NDArray[np.float64], ND
 
 
 @given(seed=st.integers(0, 10_000), rows=st.integers(2, 40), columns=st.integers(1, 14))
+@settings(deadline=None)
 def test_as_good_as_scipy(seed: int, rows: int, columns: int) -> None:
     from scipy.optimize import nnls
 
@@ -31,6 +32,7 @@ def test_as_good_as_scipy(seed: int, rows: int, columns: int) -> None:
 
 
 @given(seed=st.integers(0, 10_000), rows=st.integers(2, 40), columns=st.integers(1, 14))
+@settings(deadline=None)
 def test_conditions_of_optimality(seed: int, rows: int, columns: int) -> None:
     # Karush-Kuhn-Tucker: no gradient at positive unknowns, none that would help at zero ones.
     matrix, target = problem(seed, rows, columns)

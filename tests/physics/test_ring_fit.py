@@ -5,6 +5,8 @@ from typing import Any
 
 import numpy as np
 import pytest
+from hypothesis import given, settings
+from hypothesis import strategies as st
 
 from gatecheck.physics.gate_loop import step_response
 from gatecheck.physics.ring_fit import NoRingError, decay_error_bound_per_s, fit_ring
@@ -124,6 +126,19 @@ def test_a_settling_tail_needs_more_modes() -> None:
 def test_a_flat_record_has_no_ring(samples: Any) -> None:
     with pytest.raises(NoRingError):
         fit_ring(sample_au=samples, step_s=1e-9)
+
+
+@given(seed=st.integers(0, 10_000), samples=st.integers(24, 200))
+@settings(deadline=None)
+def test_noise_is_fitted_or_refused(seed: int, samples: int) -> None:
+    values = np.random.default_rng(seed).normal(size=samples)
+    try:
+        ring = fit_ring(sample_au=values, step_s=1e-9)
+    except NoRingError:
+        return
+    # Nothing better than noise: whatever is found explains little of it.
+    assert ring.noise_au > 0.3
+    assert 0.0 < ring.ring_hz < 0.5e9
 
 
 def test_a_bare_decay_has_no_ring() -> None:

@@ -2,7 +2,7 @@ from __future__ import annotations
 
 import numpy as np
 import pytest
-from hypothesis import given
+from hypothesis import given, settings
 from hypothesis import strategies as st
 
 from gatecheck.physics.ringing import (
@@ -77,6 +77,7 @@ def test_peak_is_smooth_through_critical_damping() -> None:
 
 
 @given(resistance=st.floats(0.1, 50.0), inductance=st.floats(1e-10, 1e-6), capacitance=st.floats(1e-11, 1e-7))
+@settings(deadline=None)
 def test_needed_resistance_gives_the_damping(
     resistance: float, inductance: float, capacitance: float
 ) -> None:
@@ -88,6 +89,7 @@ def test_needed_resistance_gives_the_damping(
 
 
 @given(resistance=st.floats(0.1, 50.0), inductance=st.floats(1e-10, 1e-6), capacitance=st.floats(1e-11, 1e-7))
+@settings(deadline=None)
 def test_bead_limit_is_where_the_damping_falls_to_the_minimum(
     resistance: float, inductance: float, capacitance: float
 ) -> None:
@@ -118,6 +120,7 @@ def test_decrement() -> None:
 
 
 @given(zeta=st.floats(1e-6, 0.999))
+@settings(deadline=None)
 def test_decrement_and_damping_are_inverse(zeta: float) -> None:
     decrement = decrement_from_damping_neper(loop_damping_ratio=zeta)
     assert float(damping_from_decrement_ratio(log_decrement_neper=decrement)) == pytest.approx(zeta)

@@ -84,9 +84,14 @@ def test_error_gain_is_the_derivative(topology: Topology) -> None:
 
 
 def network(
-    part_ohm: Any, *, series: bool, pads_f: float = 0.0, reference: tuple[float, float] = (50.0, 50.0)
+    part_ohm: Any,
+    *,
+    series: bool,
+    pads_f: float = 0.0,
+    lead_h: float = 0.0,
+    reference: tuple[float, float] = (50.0, 50.0),
 ) -> Any:
-    """Scattering parameters made with scikit-rf from a chain matrix: pads, part, pads."""
+    """Scattering parameters made with scikit-rf from a chain matrix: leads and pads around the part."""
     from skrf import network as skrf
 
     ones, none = np.ones(part_ohm.size), np.zeros(part_ohm.size)
@@ -95,7 +100,8 @@ def network(
     else:
         part = np.array([[ones, none], [1.0 / part_ohm, ones]])
     pad = np.array([[ones, none], [2j * np.pi * FREQUENCY_HZ * pads_f, ones]])
-    chain = np.einsum("abn,bcn,cdn->nad", pad, part, pad)
+    lead = np.array([[ones, 2j * np.pi * FREQUENCY_HZ * lead_h], [none, ones]])
+    chain = np.einsum("abn,bcn,cdn,den,efn->naf", lead, pad, part, pad, lead)
     return skrf.a2s(chain, np.array(reference))
 
 
@@ -117,6 +123,15 @@ def test_pads_are_taken_off() -> None:
     found = measured_impedance(scattering_ratio=network(part, series=True, pads_f=1e-12), reference_ohm=FIFTY)
     assert found.with_pads
     assert found.topology is Topology.SERIES
+    assert found.impedance_ohm == pytest.approx(part, rel=1e-9)
+
+
+def test_leads_in_series_with_a_shunt_part_are_taken_off() -> None:
+    # 5 nH at each port of a shunt-through fixture.
+    part = impedance_ohm(B2, frequency_hz=FREQUENCY_HZ)
+    found = measured_impedance(scattering_ratio=network(part, series=False, lead_h=5e-9), reference_ohm=FIFTY)
+    assert found.with_pads
+    assert found.topology is Topology.SHUNT
     assert found.impedance_ohm == pytest.approx(part, rel=1e-9)
 
 

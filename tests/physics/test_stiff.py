@@ -6,6 +6,7 @@ import numpy as np
 import pytest
 from numpy.typing import NDArray
 
+from gatecheck.physics import stiff
 from gatecheck.physics.stiff import NotIntegrableError, _step, integrate, state_trajectory
 from gatecheck.physics.trajectory import value_at
 
@@ -116,6 +117,12 @@ def test_trajectory_between_steps() -> None:
     position = state_trajectory(solution, state_index=0)  # without damping: cos t
     for time_s in (0.3, 1.7, 4.4):
         assert float(value_at(position, time_s=time_s)) == pytest.approx(np.cos(time_s), abs=1e-4)
+
+
+def test_no_end_in_sight_is_an_error(monkeypatch: pytest.MonkeyPatch) -> None:
+    monkeypatch.setattr(stiff, "_MOST_ATTEMPTS", 5)
+    with pytest.raises(NotIntegrableError, match="no end"):
+        integrate(VanDerPol(1000.0), start_au=np.array([2.0, 0.0]), duration_s=2000.0, scale_au=np.ones(2))
 
 
 def test_a_singularity_ends_in_an_error() -> None:

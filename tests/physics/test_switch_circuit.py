@@ -251,6 +251,13 @@ def test_devices_must_be_of_one_kind(devices: list[SwitchBranch]) -> None:
         parallel_poles_per_s(devices, SHARED)
 
 
+@pytest.mark.parametrize("kelvin_h", [None, 5 * N])
+def test_a_single_switch_is_the_smallest_parallel_network(kelvin_h: float | None) -> None:
+    device = dataclasses.replace(SET_O2, bead=BEADS["B4"], kelvin_inductance_h=kelvin_h)
+    alone, network = single_switch_poles_per_s(device), parallel_poles_per_s([device], SharedLeads())
+    assert np.sort_complex(alone) == pytest.approx(np.sort_complex(network), rel=1e-9)
+
+
 def test_corners_give_the_same_as_one_by_one() -> None:
     gains, resistances = np.array([[1.0], [40.0]]), np.array([0.5, 2.0, 5.0])
     bead = BEADS["B2"]

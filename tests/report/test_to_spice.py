@@ -1,5 +1,6 @@
 from __future__ import annotations
 
+import dataclasses
 import re
 from typing import TYPE_CHECKING
 
@@ -51,6 +52,12 @@ DECKS = {
         loop("G2", BEADS["B2"]), title="bump", gate_drain_f=2e-11, slope_v_per_s=5e10, swing_v=400.0
     ),
     "oscillation": oscillation_deck([SET_P], SharedLeads(), title="one", duration_s=1e-6),
+    "kelvin": oscillation_deck(
+        [dataclasses.replace(SET_O2, kelvin_inductance_h=5e-9, output_siemens=0.01, bead=BEADS["B2"])],
+        SharedLeads(),
+        title="kelvin",
+        duration_s=5e-8,
+    ),
     "parallel": oscillation_deck(
         [SET_O2, SET_O2], SHARED, title="two", kicks_v=(1e-3, -1e-3), duration_s=5e-8
     ),
