@@ -13,7 +13,7 @@ from typing import TYPE_CHECKING
 import numpy as np
 
 from gatecheck.physics.bead import BeadLadder
-from gatecheck.physics.gate_loop import GateLoop, StepResponse, loop_states, ring_mode
+from gatecheck.physics.gate_loop import GateLoop, StepResponse, loop_states
 from gatecheck.physics.stiff import integrate, state_trajectory
 from gatecheck.physics.trajectory import Trajectory
 from gatecheck.physics.transient import record_length_s
@@ -25,7 +25,6 @@ if TYPE_CHECKING:
 
 _CURRENT, _CHARGE, _SECTIONS = 0, 1, 2  # places in the state
 _LEAST_ELASTANCE = 1e-300  # keeps a start on a plateau from dividing by zero; it starts at its foot
-_PERIODS = 6.0  # of the ring without saturation; the extremes lie in the first one; our choice
 _NO_BEAD = BeadLadder(
     dc_resistance_ohm=np.zeros(()),
     section_resistance_ohm=np.zeros(0),
@@ -98,19 +97,12 @@ def nonlinear_edge(
     Returns:
         Trajectories of corners (...).
     """
-    mode = ring_mode(loop)
-    periods_s = np.where(
-        np.isnan(mode.natural_hz), np.inf, _PERIODS / np.where(mode.natural_hz > 0.0, mode.natural_hz, 1.0)
-    )
-    duration_s = np.minimum(
-        record_length_s(state_matrix_per_s=loop_states(loop).state_matrix_per_s), periods_s
-    )
     system = _NonlinearLoop(loop, final_v=final_v, charge=charge, saturation=saturation)
     step_v = final_v - start_v
     solution = integrate(
         system,
         start_au=system.start(start_v),
-        duration_s=duration_s,
+        duration_s=record_length_s(state_matrix_per_s=loop_states(loop).state_matrix_per_s),
         scale_au=system.scale(abs(step_v)),
     )
     moved = state_trajectory(solution, state_index=_CHARGE)

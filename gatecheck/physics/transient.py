@@ -8,6 +8,7 @@ resolved during its first few periods, which is where its extremes lie, whatever
 
 from __future__ import annotations
 
+import math
 from dataclasses import dataclass
 from typing import TYPE_CHECKING
 
@@ -19,10 +20,10 @@ from gatecheck.physics.trajectory import Trajectory
 if TYPE_CHECKING:
     from gatecheck.physics.arrays import RealArray
 
-OCTAVES_COUNT = 14  # record length over first block 2^14: picoseconds to microseconds; our choice
+OCTAVES_COUNT = 16  # record length over first block 2^16: picoseconds to microseconds; our choice
 _STEPS_LOG2 = 4  # 16 samples per octave: at least 6 per period up to the third period; our choice
-_RECORD_TIME_CONSTANTS = 10.0  # the slowest mode has decayed to 5e-5; our choice
-_LEAST_DECAY = 1e-3  # a mode without loss gets a record of 10/1e-3 radians; our choice
+_TIME_CONSTANTS = 10.0  # a decaying mode is followed down to 5e-5; our choice
+_PERIODS = 4.0  # a ringing one only so long: its extremes lie in the first two; our choice
 
 
 @dataclass(frozen=True, slots=True, kw_only=True)
@@ -41,10 +42,10 @@ class LinearResponse:
 
 
 def record_length_s(*, state_matrix_per_s: RealArray) -> RealArray:
-    """Length of record in which even the slowest mode settles.
+    """Length of record that shows every mode: ten time constants, or four periods if those are over sooner.
 
-    Source: ten time constants of the slowest eigenvalue, our choice.
-    Valid: stable networks; a mode that decays by less than a thousandth per radian counts as decaying so.
+    Source: our choice; extremes and crossings lie in the first two periods of the slowest mode.
+    Valid: no eigenvalue at zero; growing modes count by their periods.
 
     Args:
         state_matrix_per_s: A, shape (..., n, n).
@@ -53,8 +54,9 @@ def record_length_s(*, state_matrix_per_s: RealArray) -> RealArray:
         Seconds, shape (...).
     """
     poles = np.linalg.eigvals(state_matrix_per_s)
-    decay = np.maximum(-poles.real, _LEAST_DECAY * np.abs(poles))
-    return np.asarray(_RECORD_TIME_CONSTANTS / decay.min(axis=-1))
+    settling = np.maximum(-poles.real, 0.0) / _TIME_CONSTANTS
+    ringing = np.abs(poles.imag) / (2.0 * math.pi * _PERIODS)
+    return np.asarray(1.0 / np.maximum(settling, ringing).min(axis=-1))
 
 
 def linear_response(
