@@ -1,1 +1,1 @@
-"""Reports to text: no decisions, no printing."""
+"""Report to text, one module per format. Nothing is decided here and nothing is printed."""

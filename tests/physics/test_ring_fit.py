@@ -36,11 +36,11 @@ class Record:
 
 
 RECORDS = {
-    "R1": Record(29.9625, 9.4248, 1.0, 400.0, 0.02, 11.75, 0.07468),
-    "R2": Record(29.3939, 37.6991, 1.0, 200.0, 0.02, 98.12, 0.58812),
-    "R3": Record(99.6795, 50.2655, 2.5, 100.0, 0.03, 135.73, 0.85826),
-    "R4": Record(29.9625, 9.4248, 1.0, 400.0, 0.1, 58.76, 0.37341),
-    "R5": Record(21.1754, 49.9998, 2.5, 200.0, 0.01, 56.48, 0.28986),
+    "slow": Record(29.9625, 9.4248, 1.0, 400.0, 0.02, 11.75, 0.07468),
+    "damped": Record(29.3939, 37.6991, 1.0, 200.0, 0.02, 98.12, 0.58812),
+    "fast": Record(99.6795, 50.2655, 2.5, 100.0, 0.03, 135.73, 0.85826),
+    "noisy": Record(29.9625, 9.4248, 1.0, 400.0, 0.1, 58.76, 0.37341),
+    "gate": Record(21.1754, 49.9998, 2.5, 200.0, 0.01, 56.48, 0.28986),
 }
 
 
@@ -82,7 +82,8 @@ def test_scatter_reaches_the_bound(name: str) -> None:
 
 
 @pytest.mark.parametrize(
-    ("name", "closed"), [("R1", 0.07320), ("R2", 0.58558), ("R3", 0.85530), ("R4", 0.36599), ("R5", 0.28284)]
+    ("name", "closed"),
+    [("slow", 0.07320), ("damped", 0.58558), ("fast", 0.85530), ("noisy", 0.36599), ("gate", 0.28284)],
 )
 def test_closed_bound(name: str, closed: float) -> None:
     # Own closed form, evaluated apart; 0 to 2.5 % below the Fisher matrix.
@@ -96,7 +97,7 @@ def test_closed_bound(name: str, closed: float) -> None:
 
 def test_eight_bit_quantisation() -> None:
     # 2.5 V span: +3.1 kHz and +0.23 % of the decay (evaluated apart).
-    record, step = RECORDS["R1"], 2.5 / 256
+    record, step = RECORDS["slow"], 2.5 / 256
     ring = fit_ring(sample_au=np.round(record.samples() / step) * step, step_s=record.step_s)
     assert (ring.ring_hz - record.ring_mhz * 1e6) / 1e3 == pytest.approx(3.1, abs=0.2)
     assert ring.decay_per_s / (record.decay * 1e6) - 1.0 == pytest.approx(0.0023, abs=0.0005)
@@ -114,7 +115,7 @@ def test_ring_of_a_gate_loop() -> None:
 
 
 def test_a_settling_tail_needs_more_modes() -> None:
-    record = RECORDS["R1"]
+    record = RECORDS["slow"]
     time_us = np.arange(record.samples().size) * record.step_s * 1e6
     ring = fit_ring(
         sample_au=record.samples() + 0.2 * np.exp(-2.0 * time_us), step_s=record.step_s, has_tail=True
