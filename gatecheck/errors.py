@@ -38,10 +38,6 @@ class InputError(GatecheckError):
     column: int = 0
     excerpt: str = ""
 
-    def __str__(self) -> str:
-        place = f"{self.path}:{self.line}:{self.column}" if self.line else self.path
-        return f"{place}: {self.message}" if place else self.message
-
 
 @dataclass
 class RuleError(GatecheckError):

@@ -1,0 +1,1 @@
+"""One graph of parts, pins and nets, whatever file it came from. SI units from here on."""

@@ -1,0 +1,1 @@
+"""Which transistors are switches, and what stands between each gate and its driver."""

@@ -1,0 +1,307 @@
+"""All that a rule may import: the Rule itself, the gates it looks at, and how to word a verdict.
+
+A rule decides and does not compute. It is given the gates of one design, asks them for facts, and yields
+verdicts; what a fail may weigh follows from what it rests on, and is settled here, not in the rule.
+"""
+
+from __future__ import annotations
+
+from dataclasses import dataclass
+from functools import cached_property
+from typing import TYPE_CHECKING
+
+from gatecheck.finding import (
+    WEAK_ORIGINS,
+    Ask,
+    Finding,
+    Level,
+    Limit,
+    Origin,
+    Quantity,
+    Spot,
+    Verdict,
+    fingerprint,
+    least_trusted,
+)
+from gatecheck.quantities import Quantities
+
+if TYPE_CHECKING:
+    from collections.abc import Callable, Iterable, Iterator, Mapping, Sequence
+
+    from gatecheck.copper.chain import Chains
+    from gatecheck.design.model import Part
+    from gatecheck.networks.find import Networks
+    from gatecheck.networks.model import EdgePaths, GateNetwork, Switch
+    from gatecheck.settings import Settings
+
+__all__ = [
+    "Ask",
+    "Bound",
+    "Design",
+    "Finding",
+    "Gate",
+    "Level",
+    "Limit",
+    "Origin",
+    "Quantity",
+    "Rule",
+    "Say",
+    "Verdict",
+    "least_trusted",
+]
+
+EDGES = ("on", "off")
+
+
+@dataclass(frozen=True, slots=True)
+class Bound:
+    """A limit of a quantity with the level of a fail that breaks it; at most `maximum` or at least `minimum`."""
+
+    level: Level
+    origin: Origin
+    source: str
+    maximum: float | None = None
+    minimum: float | None = None
+
+    def broken_by(self, value: Quantity) -> bool:
+        """Does the whole interval lie outside?"""
+        if self.maximum is not None:
+            return value.low > self.maximum
+        return self.minimum is not None and value.high < self.minimum
+
+    def kept_by(self, value: Quantity) -> bool:
+        """Does the whole interval lie inside?"""
+        if self.maximum is not None:
+            return value.high <= self.maximum
+        return self.minimum is None or value.low >= self.minimum
+
+    def limit(self, unit: str) -> Limit:
+        """The bound as a finding shows it."""
+        return Limit(unit, self.source, minimum=self.minimum, maximum=self.maximum)
+
+
+def judged(value: Quantity, bounds: Sequence[Bound]) -> tuple[Verdict, Bound]:
+    """The verdict of an interval against bounds from gravest to mildest, and the bound that decided.
+
+    Broken whole: fail. Kept whole by the mildest: pass. Else undecided.
+    """
+    for bound in bounds:
+        if bound.broken_by(value):
+            return Verdict.FAIL, bound
+    mildest = bounds[-1]
+    if mildest.kept_by(value):
+        return Verdict.PASS, mildest
+    return Verdict.UNDECIDED, next(bound for bound in bounds if not bound.kept_by(value))
+
+
+def remembered(note: float, warning: float) -> tuple[Bound, Bound]:
+    """Upper limits of common practice: a fail beyond the first is a note, beyond the second a warning."""
+    source = "common practice"
+    return (
+        Bound(Level.WARNING, Origin.CATALOGUE, source, maximum=warning),
+        Bound(Level.NOTE, Origin.CATALOGUE, source, maximum=note),
+    )
+
+
+@dataclass(frozen=True, slots=True)
+class Say:
+    """A rule's verdict on one gate, before its level is capped and its places are filled in.
+
+    `message` names no part of this channel, so that repeated channels are said once; `parts` are the parts
+    it is about, in the order a reader should look at them.
+    """
+
+    gate: Gate
+    verdict: Verdict
+    message: str
+    level: Level = Level.NONE
+    rests_on: Origin = Origin.GEOMETRY
+    parts: tuple[str, ...] = ()
+    edge: str | None = None
+    quantity: str | None = None
+    value: Quantity | None = None
+    limit: Limit | None = None
+    ask: tuple[Ask, ...] = ()
+    advice: str = ""
+
+
+@dataclass(frozen=True, slots=True)
+class Rule:
+    """One check: what it asks, why, of which quantity, against which limits, and from which sources."""
+
+    id: str
+    title: str
+    reason: str
+    quantity: str
+    limits: tuple[str, ...]
+    sources: tuple[str, ...]
+    check: Callable[[Design], Iterator[Say]]
+
+
+class Gate:
+    """One switching gate as rules see it."""
+
+    def __init__(self, design: Design, network: GateNetwork, switch: Switch, quantities: Quantities) -> None:
+        self._design, self.network, self.switch, self.quantities = design, network, switch, quantities
+
+    @property
+    def name(self) -> str:
+        """Reference, and unit of a package with several transistors."""
+        transistor = self.network.transistor
+        reference = self._design.part(transistor.part).reference or transistor.part
+        return reference if transistor.unit is None else f"{reference} {transistor.unit}"
+
+    @property
+    def part(self) -> str:
+        """The transistor's part."""
+        return self.network.transistor.part
+
+    @property
+    def likely(self) -> bool:
+        """Is its role only likely?"""
+        return self.switch.likely
+
+    @property
+    def beads(self) -> tuple[str, ...]:
+        """Beads in series with the gate, from driver to gate."""
+        return self.network.beads
+
+    @property
+    def gate_resistors(self) -> tuple[str, ...]:
+        """Resistors in series with the gate, from driver to gate."""
+        return self.network.gate_resistors
+
+    @property
+    def open_parts(self) -> tuple[str, ...]:
+        """Series parts that are not fitted, where an edge has no other way."""
+        return self.network.open_parts
+
+    @property
+    def own_branch(self) -> frozenset[str]:
+        """Series parts that carry this gate's current alone."""
+        return self.network.own_branch
+
+    def edge(self, name: str) -> EdgePaths:
+        """The ways of one edge, `on` or `off`."""
+        return self.network.edge(name)
+
+    @property
+    def place_mm(self) -> tuple[float, float]:
+        """Where the gate pad is on the board; zero without a board."""
+        pad = next((pad for pin in self.network.transistor.gate for pad in pin.pads), None)
+        return (round(pad.x_m * 1e3, 1), round(pad.y_m * 1e3, 1)) if pad is not None else (0.0, 0.0)
+
+    def reference_of(self, part: str) -> str:
+        """What a part of this gate is called in the design."""
+        return self._design.part(part).reference or part
+
+    @property
+    def technology(self) -> str:
+        """si, sic, gan or igbt; plain silicon where nothing tells."""
+        return self.switch.technology or "si"
+
+    def quantity(self, name: str) -> Quantity | None:
+        """A quantity by its published name; None where it cannot be had."""
+        return self.quantities.get(name)
+
+    @cached_property
+    def kin(self) -> tuple[object, ...]:
+        """What like gates share: the transistor's value and package, and its side of the bridge."""
+        part = self._design.part(self.part)
+        return part.value, part.footprint, self._design.is_rail(self.network.transistor.source_net)
+
+    @cached_property
+    def drive(self) -> frozenset[tuple[str, str]]:
+        """The driver pins: gates with the same ones are one network."""
+        return frozenset((drive.part, pin.number) for drive in self.network.drives for pin in drive.pins)
+
+
+class Design:
+    """The gates of one design, and what rules may know of its parts."""
+
+    def __init__(
+        self, networks: Networks, spot: Callable[[str], Spot], settings: Settings, chains: Chains | None = None
+    ) -> None:
+        self._networks, self._spot, self.settings = networks, spot, settings
+        switches = {switch.transistor.key: switch for switch in networks.switches}
+        gates = []
+        for network in networks.gates:
+            switch = switches[network.transistor.key]
+            quantities = Quantities(network, switch.technology, networks.circuit, chains, settings)
+            gates.append(Gate(self, network, switch, quantities))
+        self.gates = tuple(gates)
+
+    def own_word(self, minimum: float | None = None, maximum: float | None = None) -> tuple[Bound, ...]:
+        """A limit that the project file states; none where it states nothing."""
+        if minimum is None and maximum is None:
+            return ()
+        return (Bound(Level.ERROR, Origin.PROJECT, self.settings.path, maximum=maximum, minimum=minimum),)
+
+    def part(self, key: str) -> Part:
+        """A part by its id."""
+        return self._networks.design.parts[key]
+
+    def is_rail(self, net: str) -> bool:
+        """Is a net a supply or a ground?"""
+        return self._networks.circuit.is_rail(net)
+
+    def finding(self, rule: Rule, say: Say) -> Finding:
+        """The finding of a verdict: level capped by what it rests on, places and fingerprint filled in."""
+        rests_on = least_trusted(say.rests_on, Origin.ASSUMED) if say.gate.likely else say.rests_on
+        level, message = say.level if say.verdict is Verdict.FAIL else Level.NONE, say.message
+        if level is Level.ERROR and rests_on in WEAK_ORIGINS:
+            level = Level.WARNING
+        if say.verdict is Verdict.FAIL and rests_on in WEAK_ORIGINS:
+            message = f"likely: {message}"
+        part = self.part(say.gate.part)
+        identity = part.symbol_path or say.gate.name
+        return Finding(
+            rule=rule.id,
+            verdict=say.verdict,
+            level=level,
+            subject=say.gate.name,
+            message=message,
+            rests_on=rests_on,
+            fingerprint=fingerprint(rule.id, identity, say.gate.network.transistor.unit or "", say.edge or ""),
+            edge=say.edge,
+            quantity=say.quantity,
+            value=say.value,
+            limit=say.limit,
+            ask=say.ask,
+            places=tuple(self._spot(key) for key in dict.fromkeys((*say.parts, say.gate.part))),
+            advice=say.advice,
+        )
+
+
+def grouped(findings: Iterable[Finding]) -> list[Finding]:
+    """Findings that say the same of several subjects, said once, with the others in `also`."""
+    groups: dict[object, list[Finding]] = {}
+    for finding in findings:
+        key = (
+            finding.rule,
+            finding.verdict,
+            finding.level,
+            finding.message,
+            finding.edge,
+            finding.rests_on,
+            finding.advice,
+        )
+        groups.setdefault((key, finding.value, finding.limit), []).append(finding)
+    return [_merged(group) for group in groups.values()]
+
+
+def _merged(group: list[Finding]) -> Finding:
+    from dataclasses import replace  # noqa: PLC0415
+
+    first, *others = group
+    places = tuple(dict.fromkeys(place for finding in group for place in finding.places))
+    asks = tuple(dict.fromkeys(ask for finding in group for ask in finding.ask))
+    return replace(first, also=tuple(finding.subject for finding in others), places=places, ask=asks)
+
+
+def by_network(gates: Iterable[Gate]) -> Mapping[frozenset[tuple[str, str]], list[Gate]]:
+    """Gates grouped by the driver pins they share."""
+    groups: dict[frozenset[tuple[str, str]], list[Gate]] = {}
+    for gate in gates:
+        groups.setdefault(gate.drive or frozenset({(gate.part, "")}), []).append(gate)
+    return groups

@@ -1,0 +1,1 @@
+"""Rules on currents and voltages."""
