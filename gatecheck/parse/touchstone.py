@@ -198,9 +198,7 @@ class _Reader:
     def _setting(self, line: _Line, name: str, rest: str) -> None:
         if name == "version":
             if not rest.startswith("2."):
-                self._refuse(
-                    line, f"Touchstone version {rest[:40] or '(none)'}", "versions 1 and 2 can be read"
-                )
+                self._refuse(line, f"Touchstone version {rest[:40] or '(none)'}", "versions 1 and 2 can be read")
             self.version = 2
         elif name == "number of ports":
             self.ports = self._count(line, rest)
@@ -256,9 +254,7 @@ class _Reader:
     def _reference(self, ports: int) -> NDArray[np.float64]:
         references = self.references or [self.option_ohm] * ports
         if len(references) != ports or min(references) <= 0.0:
-            self._refuse(
-                self.last, f"{len(references)} references for {ports} ports", "give one above zero per port"
-            )
+            self._refuse(self.last, f"{len(references)} references for {ports} ports", "give one above zero per port")
         return np.array(references)
 
     def _matrices(self, pairs: NDArray[np.float64], ports: int) -> NDArray[np.complex128]:
@@ -291,9 +287,7 @@ class _Reader:
     def _positive(self, line: _Line, word: str) -> float:
         values = list(self._numbers(line, word))
         if len(values) != 1 or values[0] <= 0.0:
-            self._refuse(
-                line, "a reference that is not above zero", "an option line reads like # MHz S RI R 50"
-            )
+            self._refuse(line, "a reference that is not above zero", "an option line reads like # MHz S RI R 50")
         return values[0]
 
     def _count(self, line: _Line, word: str) -> int:
@@ -317,9 +311,7 @@ class _Reader:
         )
 
 
-def _denormalised(
-    values: NDArray[np.complex128], parameter: str, reference_ohm: float
-) -> NDArray[np.complex128]:
+def _denormalised(values: NDArray[np.complex128], parameter: str, reference_ohm: float) -> NDArray[np.complex128]:
     """Undo version 1's normalisation to the reference (specification 1.1, data lines)."""
     if parameter == "z":
         return values * reference_ohm

@@ -213,9 +213,7 @@ class _PointModel:
         rows = np.where(
             (self._kinds == ImpedancePart.RESISTANCE)[:, None],
             change.real,
-            np.where(
-                (self._kinds == ImpedancePart.REACTANCE)[:, None], change.imag, (along[:, None] * change).real
-            ),
+            np.where((self._kinds == ImpedancePart.REACTANCE)[:, None], change.imag, (along[:, None] * change).real),
         )
         return rows / self._value_ohm[:, None], _read(impedance, self._kinds)
 
@@ -225,9 +223,7 @@ class _PointModel:
         return float(errors @ errors + (spread * coefficients) @ (spread * coefficients))
 
 
-def _basis(
-    frequency_hz: RealArray, sections_count: int, *, lowest_hz: float
-) -> tuple[ComplexArray, RealArray]:
+def _basis(frequency_hz: RealArray, sections_count: int, *, lowest_hz: float) -> tuple[ComplexArray, RealArray]:
     """Impedance of each section of one ohm, with a pure inductance as the last; and their corners."""
     corners = np.geomspace(lowest_hz, frequency_hz.max(), sections_count)
     turned = 1j * frequency_hz[:, None] / corners
@@ -269,9 +265,7 @@ def _best_capacitance(solve: Callable[[float], tuple[float, RealArray]]) -> tupl
     return math.exp(best), met[best][1]
 
 
-def _ladder(
-    coefficients: RealArray, corners: RealArray, capacitance_f: float, dc_resistance_ohm: float
-) -> BeadLadder:
+def _ladder(coefficients: RealArray, corners: RealArray, capacitance_f: float, dc_resistance_ohm: float) -> BeadLadder:
     sections, inductive = coefficients[:-1], float(coefficients[-1])
     kept = sections > _LEAST_SHARE * coefficients.sum()
     omega = 2.0 * math.pi * corners

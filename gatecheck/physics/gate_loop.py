@@ -107,9 +107,7 @@ def loop_states(loop: GateLoop) -> LoopStates:
     """
     storage, coupling = _descriptor(loop)
     root = np.sqrt(storage)
-    return LoopStates(
-        state_matrix_per_s=coupling / (root[..., :, None] * root[..., None, :]), root_storage_au=root
-    )
+    return LoopStates(state_matrix_per_s=coupling / (root[..., :, None] * root[..., None, :]), root_storage_au=root)
 
 
 def loop_poles_per_s(loop: GateLoop) -> ComplexArray:
@@ -142,9 +140,7 @@ def ring_mode(loop: GateLoop) -> RingMode:
         The mode, corners (...).
     """
     poles = loop_poles_per_s(loop)
-    with np.errstate(
-        divide="ignore", invalid="ignore"
-    ):  # a double pole has unbounded weight and does not ring
+    with np.errstate(divide="ignore", invalid="ignore"):  # a double pole has unbounded weight and does not ring
         weight = np.abs(1.0 / (poles * _admittance_slope(loop, poles)))
     rings = (poles.imag > 0.0) & (2.0 * weight >= _LEAST_WEIGHT)
     damping = np.where(rings, -poles.real / np.abs(poles), np.inf)
@@ -231,8 +227,7 @@ def edge_figures(response: StepResponse, *, start_v: Real, final_v: Real) -> Edg
         extreme_v=final_v + overshoot * step_v,
         overshoot_ratio=overshoot,
         half_time_s=first_crossing_s(response.gate, level_au=0.5),
-        rise_time_s=first_crossing_s(response.gate, level_au=0.9)
-        - first_crossing_s(response.gate, level_au=0.1),
+        rise_time_s=first_crossing_s(response.gate, level_au=0.9) - first_crossing_s(response.gate, level_au=0.1),
     )
 
 

@@ -55,9 +55,7 @@ class TurnOnFigures:
     energy_j: RealArray
 
 
-def turn_on(
-    loop: GateLoop, switch: HardSwitch, *, start_v: Real, final_v: Real, duration_s: Real
-) -> TurnOnFigures:
+def turn_on(loop: GateLoop, switch: HardSwitch, *, start_v: Real, final_v: Real, duration_s: Real) -> TurnOnFigures:
     """Simulate one turn-on under load.
 
     Source: Kirchhoff's laws with the channel law of `HardSwitch`, integrated by `stiff`.
@@ -83,9 +81,7 @@ def turn_on(
         scale_au=system.scale(np.abs(np.asarray(final_v) - start_v)),
         tolerance_ratio=_TOLERANCE,
     )
-    gate, drain, current = (
-        state_trajectory(solution, state_index=place) for place in (_GATE, _DRAIN, _CURRENT)
-    )
+    gate, drain, current = (state_trajectory(solution, state_index=place) for place in (_GATE, _DRAIN, _CURRENT))
     # While the load current moves over, the clamp holds the drain and the channel current follows the gate.
     overdrive_v = np.divide(switch.load_a, switch.transconductance_siemens)
     tenth_s, nine_tenths_s = (
@@ -135,9 +131,7 @@ class _HardSwitching:
         scale[..., _GATE] = step_v
         scale[..., _DRAIN] = self._switch.bus_v
         scale[..., _ENERGY] = self._input_f * step_v * np.asarray(self._switch.bus_v)
-        if (
-            self._bead is not None
-        ):  # a bead's voltage state is of the size of the step, its currents of the loop's
+        if self._bead is not None:  # a bead's voltage state is of the size of the step, its currents of the loop's
             voltage_like = self._bead.outflow_au < 0.0
             scale[..., _BEAD:] = np.where(voltage_like, step_v[..., None], current[..., None])
         return scale

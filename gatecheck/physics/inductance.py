@@ -76,9 +76,7 @@ def parallel_filaments_h(*, length_m: Real, distance_m: Real) -> RealArray:
     return round_wire_skin_h(length_m=length_m, radius_m=distance_m)  # the same integral, at d instead of r
 
 
-def offset_filaments_h(
-    *, first_length_m: Real, second_length_m: Real, gap_m: Real, distance_m: Real
-) -> RealArray:
+def offset_filaments_h(*, first_length_m: Real, second_length_m: Real, gap_m: Real, distance_m: Real) -> RealArray:
     """Mutual inductance of parallel filaments of any length and offset.
 
     (mu0 / 4 pi) [F(l + m + s) - F(l + s) - F(m + s) + F(s)], F(x) = x asinh(x / d) - sqrt(x^2 + d^2)
@@ -143,6 +141,4 @@ def rectangular_bar_h(*, length_m: Real, width_m: Real, thickness_m: Real) -> Re
         Henries.
     """
     length, girth = np.asarray(length_m), np.asarray(width_m) + np.asarray(thickness_m)
-    return np.asarray(
-        _PER_LENGTH * (length * (np.log(2.0 * length / girth) + 0.5) + RECTANGLE_GMD_RATIO * girth)
-    )
+    return np.asarray(_PER_LENGTH * (length * (np.log(2.0 * length / girth) + 0.5) + RECTANGLE_GMD_RATIO * girth))

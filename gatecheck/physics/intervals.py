@@ -63,9 +63,7 @@ class Gain:
     left_ratio: float
 
 
-def propagate(
-    function: Function, inputs: Mapping[str, Interval], *, signs: Mapping[str, int] | None = None
-) -> Spread:
+def propagate(function: Function, inputs: Mapping[str, Interval], *, signs: Mapping[str, int] | None = None) -> Spread:
     """Bounds of a function whose inputs are only known to intervals.
 
     Source: a monotone function has its extremes at corners; otherwise sampling, with a Kronecker sequence of
@@ -84,9 +82,7 @@ def propagate(
     """
     signs = {} if signs is None else signs
     points = _points(inputs, signs)
-    sampled = any(
-        interval.low_au != interval.high_au for name, interval in inputs.items() if name not in signs
-    )
+    sampled = any(interval.low_au != interval.high_au for name, interval in inputs.items() if name not in signs)
     values = np.asarray(function(points), dtype=np.float64)
     known = ~np.isnan(values)
     if not known.any():

@@ -81,9 +81,7 @@ def bump_v(loop: GateLoop, *, gate_drain_f: Real, slope_v_per_s: Real, swing_v: 
     return np.asarray(np.multiply(slope_v_per_s, gate_drain_f) * shape)
 
 
-def bump_from_curve_v(
-    loop: GateLoop, *, slope_v_per_s: Real, drain_v: RealArray, gate_drain_f: RealArray
-) -> RealArray:
+def bump_from_curve_v(loop: GateLoop, *, slope_v_per_s: Real, drain_v: RealArray, gate_drain_f: RealArray) -> RealArray:
     """Height of the bump with the bead in the loop and C_gd falling along the drain's rise.
 
     Source: exact linear response to a current that is straight between the curve's points.
@@ -153,9 +151,7 @@ def common_source_v(*, source_inductance_h: Real, current_slope_a_per_s: Real) -
     return np.asarray(np.multiply(source_inductance_h, current_slope_a_per_s))
 
 
-def lowest_reaching(
-    bump_at: Callable[[RealArray], RealArray], *, margin_v: Real, largest_au: Real
-) -> RealArray:
+def lowest_reaching(bump_at: Callable[[RealArray], RealArray], *, margin_v: Real, largest_au: Real) -> RealArray:
     """Smallest slope, resistance or other quantity at which the bump reaches the margin to threshold.
 
     Source: scan over six decades, 16 points each, then bisection of the first crossing.

@@ -11,9 +11,7 @@ if TYPE_CHECKING:
 
     from gatecheck.physics.arrays import RealArray
 
-_ROUNDING = 64 * float(
-    np.finfo(np.float64).eps
-)  # gradients below this part of their terms count as zero; our choice
+_ROUNDING = 64 * float(np.finfo(np.float64).eps)  # gradients below this part of their terms count as zero; our choice
 _ROUNDS_PER_UNKNOWN = 10  # the method ends in about one round per unknown; beyond that it cycles on rounding
 
 
@@ -48,9 +46,7 @@ def nonnegative_least_squares(*, columns_au: RealArray, target_au: RealArray) ->
     return solution
 
 
-def _pulled_back(
-    matrix: RealArray, target: RealArray, solution: RealArray, active: NDArray[np.bool_]
-) -> RealArray:
+def _pulled_back(matrix: RealArray, target: RealArray, solution: RealArray, active: NDArray[np.bool_]) -> RealArray:
     """Unconstrained solution on the active unknowns; those that would turn negative leave it (in place)."""
     while True:
         trial = np.zeros(solution.size)

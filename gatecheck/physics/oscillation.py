@@ -155,9 +155,7 @@ def sweep_transconductance(
     )
 
 
-def curing_resistance_ohm(
-    growth_at: Callable[[RealArray], RealArray], *, maximum_resistance_ohm: Real
-) -> RealArray:
+def curing_resistance_ohm(growth_at: Callable[[RealArray], RealArray], *, maximum_resistance_ohm: Real) -> RealArray:
     """Smallest resistance from which on, up to the largest one tried, nothing grows.
 
     Source: scan of 48 logarithmic steps and bisection of the last unstable one.

@@ -67,9 +67,7 @@ def damping_ratio(*, resistance_ohm: Real, inductance_h: Real, capacitance_f: Re
     return np.asarray(0.5 * resistance_ohm * np.sqrt(np.divide(capacitance_f, inductance_h)))
 
 
-def resistance_for_damping_ohm(
-    *, minimum_damping_ratio: Real, inductance_h: Real, capacitance_f: Real
-) -> RealArray:
+def resistance_for_damping_ohm(*, minimum_damping_ratio: Real, inductance_h: Real, capacitance_f: Real) -> RealArray:
     """Loop resistance that gives a wanted damping ratio, 2 zeta sqrt(L / C).
 
     Source: `damping_ratio` solved for R.
@@ -199,9 +197,7 @@ def decrement_from_damping_neper(*, loop_damping_ratio: Real) -> RealArray:
     return np.where(rings, 2.0 * math.pi * safe / np.sqrt(1.0 - safe**2), np.inf)
 
 
-def capacitance_from_added_f(
-    *, added_capacitance_f: Real, ring_hz: Real, ring_with_added_hz: Real
-) -> RealArray:
+def capacitance_from_added_f(*, added_capacitance_f: Real, ring_hz: Real, ring_with_added_hz: Real) -> RealArray:
     """Capacitance of a ringing loop from two frequencies, without and with a known capacitance added.
 
     Source: f is proportional to 1 / sqrt(C) at one L; C = C_a / ((f_1 / f_2)^2 - 1) (snubber practice).
@@ -221,9 +217,7 @@ def capacitance_from_added_f(
     return np.where(falls, added_capacitance_f / np.where(falls, excess, 1.0), np.nan)
 
 
-def inductance_from_ring_h(
-    *, capacitance_f: Real, ring_hz: Real, loop_damping_ratio: Real = 0.0
-) -> RealArray:
+def inductance_from_ring_h(*, capacitance_f: Real, ring_hz: Real, loop_damping_ratio: Real = 0.0) -> RealArray:
     """Inductance of a ringing loop of known capacitance, 1 / (C omega_0^2), omega_0 from the damped ring.
 
     Source: textbook second-order system, omega_0 = omega_d / sqrt(1 - zeta^2).

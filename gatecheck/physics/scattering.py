@@ -60,9 +60,7 @@ def reflection_impedance_ohm(*, reflection_ratio: ComplexArray, reference_ohm: R
     return np.asarray(reference_ohm * (1.0 + reflection_ratio) / (1.0 - reflection_ratio))
 
 
-def series_transmission_impedance_ohm(
-    *, transmission_ratio: ComplexArray, reference_ohm: Real
-) -> ComplexArray:
+def series_transmission_impedance_ohm(*, transmission_ratio: ComplexArray, reference_ohm: Real) -> ComplexArray:
     """Impedance of a part in series between two ports, 2 Z0 (1 - S21) / S21.
 
     Source: voltage divider between two references.
@@ -78,9 +76,7 @@ def series_transmission_impedance_ohm(
     return np.asarray(2.0 * np.asarray(reference_ohm) * (1.0 - transmission_ratio) / transmission_ratio)
 
 
-def shunt_transmission_impedance_ohm(
-    *, transmission_ratio: ComplexArray, reference_ohm: Real
-) -> ComplexArray:
+def shunt_transmission_impedance_ohm(*, transmission_ratio: ComplexArray, reference_ohm: Real) -> ComplexArray:
     """Impedance of a part from the line between two ports to ground, (Z0 / 2) S21 / (1 - S21).
 
     Source: voltage divider between two references.
@@ -223,9 +219,7 @@ def _four(scattering_ratio: ComplexArray) -> tuple[ComplexArray, ComplexArray, C
 
 def _two_port(scattering_ratio: ComplexArray, reference_ohm: RealArray) -> MeasuredImpedance:
     common = float(reference_ohm[0])
-    even = renormalised_ratio(
-        scattering_ratio=scattering_ratio, reference_ohm=reference_ohm, new_reference_ohm=common
-    )
+    even = renormalised_ratio(scattering_ratio=scattering_ratio, reference_ohm=reference_ohm, new_reference_ohm=common)
     s11, _, s21, _ = _four(even)
     errors = {Topology.SERIES: np.abs(s11 + s21 - 1.0), Topology.SHUNT: np.abs(s21 - s11 - 1.0)}
     lowest = max(1, round(_LOWEST_SHARE * s21.shape[-1]))

@@ -88,8 +88,7 @@ def single_switch_poles_per_s(device: SwitchBranch) -> ComplexArray:
     storage, coupling = _device_equations(device)
     if device.kelvin_inductance_h is not None:  # nothing can circulate: what leaves the driver returns to it
         storage, coupling = (
-            np.delete(np.delete(matrix, _CIRCULATING, axis=-1), _CIRCULATING, axis=-2)
-            for matrix in (storage, coupling)
+            np.delete(np.delete(matrix, _CIRCULATING, axis=-1), _CIRCULATING, axis=-2) for matrix in (storage, coupling)
         )
     return _poles(storage, coupling)
 

@@ -31,9 +31,7 @@ _QUINTIC = np.array(
     ]
 )
 # The same for value and slope alone.
-_CUBIC = np.array(
-    [[1.0, 0.0, -3.0, 2.0], [0.0, 1.0, -2.0, 1.0], [0.0, 0.0, 3.0, -2.0], [0.0, 0.0, -1.0, 1.0]]
-)
+_CUBIC = np.array([[1.0, 0.0, -3.0, 2.0], [0.0, 1.0, -2.0, 1.0], [0.0, 0.0, 3.0, -2.0], [0.0, 0.0, -1.0, 1.0]])
 
 
 @dataclass(frozen=True, slots=True, kw_only=True)
@@ -56,9 +54,7 @@ class Trajectory:
             time_s=self.time_s,
             value_au=self.value_au * factor,
             slope_au_per_s=self.slope_au_per_s * factor,
-            curvature_au_per_s2=None
-            if self.curvature_au_per_s2 is None
-            else self.curvature_au_per_s2 * factor,
+            curvature_au_per_s2=None if self.curvature_au_per_s2 is None else self.curvature_au_per_s2 * factor,
         )
 
     def joined(self, later: Trajectory) -> Trajectory:
@@ -68,9 +64,7 @@ class Trajectory:
             time_s=np.concatenate([self.time_s, self.time_s[..., -1:] + later.time_s], axis=-1),
             value_au=np.concatenate([self.value_au, later.value_au], axis=-1),
             slope_au_per_s=np.concatenate([self.slope_au_per_s, later.slope_au_per_s], axis=-1),
-            curvature_au_per_s2=None
-            if own is None or other is None
-            else np.concatenate([own, other], axis=-1),
+            curvature_au_per_s2=None if own is None or other is None else np.concatenate([own, other], axis=-1),
         )
 
 
@@ -197,13 +191,9 @@ def _interval_polynomial(trajectory: Trajectory, start: NDArray[np.intp]) -> Rea
     if trajectory.curvature_au_per_s2 is not None:
         known.append(trajectory.curvature_au_per_s2)
     ends = [
-        _take(samples, place) * step_s**power
-        for place in (start, start + 1)
-        for power, samples in enumerate(known)
+        _take(samples, place) * step_s**power for place in (start, start + 1) for power, samples in enumerate(known)
     ]
-    return np.asarray(
-        np.stack(ends, axis=-1) @ (_CUBIC if trajectory.curvature_au_per_s2 is None else _QUINTIC)
-    )
+    return np.asarray(np.stack(ends, axis=-1) @ (_CUBIC if trajectory.curvature_au_per_s2 is None else _QUINTIC))
 
 
 def _value(polynomial: RealArray, position: RealArray) -> RealArray:

@@ -109,9 +109,7 @@ def observed(response: LinearResponse, *, weights_au: RealArray) -> Trajectory:
     """
     row = np.asarray(weights_au)[..., None, :]
     slope_row = row @ response.state_matrix_per_s
-    rows = np.concatenate(
-        np.broadcast_arrays(row, slope_row, slope_row @ response.state_matrix_per_s), axis=-2
-    )
+    rows = np.concatenate(np.broadcast_arrays(row, slope_row, slope_row @ response.state_matrix_per_s), axis=-2)
     value, slope, curvature = np.moveaxis(rows @ response.decay_au, -2, 0)
     drift = (weights_au * response.drift_au_per_s).sum(axis=-1)[..., None]
     offset = (weights_au * response.offset_au).sum(axis=-1)[..., None]

@@ -29,9 +29,7 @@ def scattering_from_impedance_ratio(*, matrix_ohm: ComplexArray, reference_ohm: 
     return np.asarray((normal - identity) @ np.linalg.inv(normal + identity))
 
 
-def scattering_from_admittance_ratio(
-    *, matrix_siemens: ComplexArray, reference_ohm: RealArray
-) -> ComplexArray:
+def scattering_from_admittance_ratio(*, matrix_siemens: ComplexArray, reference_ohm: RealArray) -> ComplexArray:
     """S from Y, (1 - y)(1 + y)^-1 with y normalised by the roots of the references.
 
     Source: circuit theory.
@@ -68,9 +66,7 @@ def scattering_from_hybrid_ratio(*, matrix_au: ComplexArray, reference_ohm: Real
     return _from_mixed(matrix_au, np.sqrt(reference_ohm), first_is_current=True)
 
 
-def scattering_from_inverse_hybrid_ratio(
-    *, matrix_au: ComplexArray, reference_ohm: RealArray
-) -> ComplexArray:
+def scattering_from_inverse_hybrid_ratio(*, matrix_au: ComplexArray, reference_ohm: RealArray) -> ComplexArray:
     """S from G (i1, v2 as functions of v1, i2).
 
     Source: definition of power waves for real references (circuit theory).

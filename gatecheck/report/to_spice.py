@@ -31,9 +31,7 @@ _CLAMP_DROP = 1e-4  # the clamp takes the load at this part of the bus voltage a
 _SHORT_OHM = 1e-6  # a lead without resistance and inductance; a source of 0 V troubles the step control
 
 
-def edge_deck(
-    loop: GateLoop, *, title: str, start_v: float, final_v: float, duration_s: float | None = None
-) -> str:
+def edge_deck(loop: GateLoop, *, title: str, start_v: float, final_v: float, duration_s: float | None = None) -> str:
     """Deck of one edge of a gate loop without corner axes.
 
     Args:
@@ -82,9 +80,7 @@ def nonlinear_edge_deck(
     else:
         charge_nc = charge.charge_c * float(np.asarray(charge.charge_ratio)) * 1e9
         start_nc = float(np.interp(start_v, charge.voltage_v, charge_nc))
-        points = ", ".join(
-            f"{_number(q)}, {_number(v)}" for q, v in zip(charge_nc, charge.voltage_v, strict=True)
-        )
+        points = ", ".join(f"{_number(q)}, {_number(v)}" for q, v in zip(charge_nc, charge.voltage_v, strict=True))
         lines += [
             "* voltage of node q: gate charge in nanocoulombs",
             "Vq g gq 0",
@@ -95,9 +91,7 @@ def nonlinear_edge_deck(
     return _deck(title, [*lines, *_edge_analysis(loop, start_v, final_v, None)])
 
 
-def bump_deck(
-    loop: GateLoop, *, title: str, gate_drain_f: float, slope_v_per_s: float, swing_v: float
-) -> str:
+def bump_deck(loop: GateLoop, *, title: str, gate_drain_f: float, slope_v_per_s: float, swing_v: float) -> str:
     """Deck of a dv/dt bump on a gate that is held off, without corner axes.
 
     Args:
@@ -274,9 +268,7 @@ def _device(name: str, device: SwitchBranch, kick_v: float) -> Iterator[str]:
     yield from _lead(f"d{name}", "dj", f"d{name}", device.drain_resistance_ohm, device.drain_inductance_h)
     yield from _lead(f"s{name}", f"s{name}", "0", device.source_resistance_ohm, device.source_inductance_h)
     if device.kelvin_inductance_h is not None:
-        yield from _lead(
-            f"k{name}", f"s{name}", "k", device.kelvin_resistance_ohm, device.kelvin_inductance_h
-        )
+        yield from _lead(f"k{name}", f"s{name}", "k", device.kelvin_resistance_ohm, device.kelvin_inductance_h)
     yield f"Cgs{name} g{name} s{name} {_number(device.gate_source_f)} ic={_number(kick_v)}"
     yield f"Cgd{name} g{name} d{name} {_number(device.gate_drain_f)} ic={_number(kick_v)}"
     yield f"Cds{name} d{name} s{name} {_number(device.drain_source_f)} ic=0"

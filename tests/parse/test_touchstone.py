@@ -156,9 +156,7 @@ def test_example_13() -> None:
 def test_example_14() -> None:
     data = read_touchstone(EXAMPLE_14, path="part.s4p")
     assert data.values.shape == (2, 4, 4)
-    assert data.values[0, 1] == pytest.approx(
-        polar((0.40, -42.20), (0.60, 161.20), (0.53, -79.34), (0.42, -66.58))
-    )
+    assert data.values[0, 1] == pytest.approx(polar((0.40, -42.20), (0.60, 161.20), (0.53, -79.34), (0.42, -66.58)))
     assert complex(data.values[1, 3, 0]) == pytest.approx(complex(polar((0.57, -95.77))[0]))
 
 

@@ -25,15 +25,9 @@ if TYPE_CHECKING:
 
 REFERENCE = Path(__file__).parent.parent / "reference"
 
-B1 = parallel_bead(
-    dc_resistance_ohm=0.20, parallel_resistance_ohm=600.0, inductance_h=1.5e-6, capacitance_f=0.6e-12
-)
-B2 = parallel_bead(
-    dc_resistance_ohm=0.010, parallel_resistance_ohm=34.0, inductance_h=0.12e-6, capacitance_f=0.8e-12
-)
-B3 = parallel_bead(
-    dc_resistance_ohm=0.05, parallel_resistance_ohm=125.0, inductance_h=0.45e-6, capacitance_f=0.5e-12
-)
+B1 = parallel_bead(dc_resistance_ohm=0.20, parallel_resistance_ohm=600.0, inductance_h=1.5e-6, capacitance_f=0.6e-12)
+B2 = parallel_bead(dc_resistance_ohm=0.010, parallel_resistance_ohm=34.0, inductance_h=0.12e-6, capacitance_f=0.8e-12)
+B3 = parallel_bead(dc_resistance_ohm=0.05, parallel_resistance_ohm=125.0, inductance_h=0.45e-6, capacitance_f=0.5e-12)
 B4 = BeadLadder(
     dc_resistance_ohm=np.array(0.05),
     section_resistance_ohm=np.array([10.0, 40.0, 80.0]),
@@ -57,9 +51,7 @@ def loop(name: str, bead: BeadLadder | None = None) -> GateLoop:
     return plain_loop(resistance, inductance, capacitance, bead)
 
 
-def plain_loop(
-    resistance: float, inductance: float, capacitance: float, bead: BeadLadder | None = None
-) -> GateLoop:
+def plain_loop(resistance: float, inductance: float, capacitance: float, bead: BeadLadder | None = None) -> GateLoop:
     return GateLoop(
         resistance_ohm=np.array(resistance),
         inductance_h=np.array(inductance),

@@ -87,9 +87,7 @@ def test_corners_give_the_same_as_one_by_one() -> None:
         capacitance_f=0.5e-12,
     )
     single = [
-        parallel_bead(
-            dc_resistance_ohm=0.05, parallel_resistance_ohm=r, inductance_h=x, capacitance_f=0.5e-12
-        )
+        parallel_bead(dc_resistance_ohm=0.05, parallel_resistance_ohm=r, inductance_h=x, capacitance_f=0.5e-12)
         for r, x in zip(parallel, inductance, strict=True)
     ]
     assert crossover_hz(together).tolist() == [float(crossover_hz(bead)) for bead in single]

@@ -19,9 +19,7 @@ from tests.physics.reference_cases import B3
 )
 def test_shape(exponent: float, expected: list[float]) -> None:
     # 1 / (1 + x^n) at x = 1/4, 1/2, 1, 2; exact fractions.
-    left = impedance_left_ratio(
-        current_a=np.array([0.25, 0.5, 1.0, 2.0]), half_current_a=1.0, exponent_1=exponent
-    )
+    left = impedance_left_ratio(current_a=np.array([0.25, 0.5, 1.0, 2.0]), half_current_a=1.0, exponent_1=exponent)
     assert left == pytest.approx(np.array(expected), rel=1e-12)
 
 
@@ -57,12 +55,9 @@ def test_bias_moves_the_crossover_up_first() -> None:
 @pytest.mark.parametrize(("half", "exponent"), [(0.5, 2.0), (1.3, 1.4), (0.2, 3.0)])
 def test_constants_return_from_two_points(half: float, exponent: float) -> None:
     first, second = (
-        impedance_left_ratio(current_a=current, half_current_a=half, exponent_1=exponent)
-        for current in (0.3, 0.9)
+        impedance_left_ratio(current_a=current, half_current_a=half, exponent_1=exponent) for current in (0.3, 0.9)
     )
-    found = bias_constants(
-        first_current_a=0.3, first_left_ratio=first, second_current_a=0.9, second_left_ratio=second
-    )
+    found = bias_constants(first_current_a=0.3, first_left_ratio=first, second_current_a=0.9, second_left_ratio=second)
     assert [float(part) for part in found] == pytest.approx([half, exponent], rel=1e-9)
 
 

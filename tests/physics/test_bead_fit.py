@@ -74,9 +74,7 @@ def test_reading_noise_is_averaged() -> None:
     rng = np.random.default_rng(11)
     truth = synthetic_ferrite(FREQUENCY_HZ)
     noise = (rng.normal(size=61) + 1j * rng.normal(size=61)) / np.sqrt(2.0)
-    fit = fit_to_impedance(
-        frequency_hz=FREQUENCY_HZ, measured_ohm=truth * (1.0 + 0.03 * noise), dc_resistance_ohm=0.15
-    )
+    fit = fit_to_impedance(frequency_hz=FREQUENCY_HZ, measured_ohm=truth * (1.0 + 0.03 * noise), dc_resistance_ohm=0.15)
     error = np.abs(impedance_ohm(fit.bead, frequency_hz=FREQUENCY_HZ) / truth - 1.0)
     assert float(np.sqrt(np.mean(error**2))) < 0.013
     assert float(error.max()) < 0.03
@@ -87,9 +85,7 @@ def test_a_search_over_all_elements_finds_no_better_bead() -> None:
     from scipy.optimize import least_squares
 
     truth = synthetic_ferrite(FREQUENCY_HZ)
-    fit = fit_to_impedance(
-        frequency_hz=FREQUENCY_HZ, measured_ohm=truth, dc_resistance_ohm=0.15, sections_count=7
-    )
+    fit = fit_to_impedance(frequency_hz=FREQUENCY_HZ, measured_ohm=truth, dc_resistance_ohm=0.15, sections_count=7)
     corners = fit.bead.section_resistance_ohm / fit.bead.section_inductance_h
 
     def residual(logs: np.ndarray) -> np.ndarray:
@@ -119,9 +115,7 @@ def test_a_search_over_all_elements_finds_no_better_bead() -> None:
     sections=st.integers(3, 12),
 )
 @settings(max_examples=30, deadline=None)
-def test_every_fit_is_passive(
-    relaxation_hz: float, permeability: float, steepness: float, sections: int
-) -> None:
+def test_every_fit_is_passive(relaxation_hz: float, permeability: float, steepness: float, sections: int) -> None:
     s = 2j * np.pi * FREQUENCY_HZ
     core = 1.0 + permeability / (1.0 + 1j * FREQUENCY_HZ / relaxation_hz) ** steepness
     measured = 0.1 + 1.0 / (1.0 / (s * 4e-9 * core) + s * 0.4e-12)
@@ -201,8 +195,6 @@ def test_from_file_to_bead() -> None:
     data = read_touchstone("\n".join(["# Hz S RI R 50", *rows]), path="bead.s2p")
     measured = measured_impedance(scattering_ratio=data.values, reference_ohm=data.reference_ohm)
     assert measured.topology is Topology.SERIES
-    fit = fit_to_impedance(
-        frequency_hz=data.frequency_hz, measured_ohm=measured.impedance_ohm, dc_resistance_ohm=0.15
-    )
+    fit = fit_to_impedance(frequency_hz=data.frequency_hz, measured_ohm=measured.impedance_ohm, dc_resistance_ohm=0.15)
     found = fitted_impedance_ohm(fit, frequency_hz=FREQUENCY_HZ)
     assert np.abs(found / truth - 1.0).max() < 0.01

@@ -14,13 +14,13 @@ def test_the_true_peak_lies_between(resistance: float, inductance: float, capaci
     # Second opinion: the closed form of the whole loop; the lower bound is promised from a damping ratio of 0.5 on.
     zeta = damping_ratio(resistance_ohm=resistance, inductance_h=inductance, capacitance_f=capacitance)
     peak = float(
-        peak_current_a(
-            step_v=12.0, loop_damping_ratio=zeta, characteristic_ohm=(inductance / capacitance) ** 0.5
-        )
+        peak_current_a(step_v=12.0, loop_damping_ratio=zeta, characteristic_ohm=(inductance / capacitance) ** 0.5)
     )
     assert peak <= peak_current_upper_a(voltage_v=12.0, resistance_ohm=resistance) * (1.0 + 1e-12)
     if float(zeta) >= 0.5:
-        assert peak >= peak_current_lower_a(voltage_v=12.0, resistance_ohm=0.5 * resistance, further_ohm=0.5 * resistance)
+        assert peak >= peak_current_lower_a(
+            voltage_v=12.0, resistance_ohm=0.5 * resistance, further_ohm=0.5 * resistance
+        )
 
 
 def test_no_resistance_bounds_nothing() -> None:

@@ -44,9 +44,7 @@ EDGES = [
 ]
 
 
-def edge(
-    name: str, bead: str | None, ramp_ns: float = 0.0, *, off: bool = False
-) -> tuple[StepResponse, EdgeFigures]:
+def edge(name: str, bead: str | None, ramp_ns: float = 0.0, *, off: bool = False) -> tuple[StepResponse, EdgeFigures]:
     low, high = LOOPS[name][:2]
     response = step_response(loop(name, BEADS[bead] if bead else None), rise_time_s=ramp_ns * 1e-9)
     start, final = (high, low) if off else (low, high)
@@ -119,16 +117,12 @@ def test_delay_and_rise_time_that_a_bead_adds(bead: str, added_ns: float, slower
     assert float(with_bead.rise_time_s - without.rise_time_s) == pytest.approx(slower_ns * 1e-9, rel=3e-3)
 
 
-@pytest.mark.parametrize(
-    ("bead", "estimate", "exact"), [("B2", 22.3, 18.5), ("B3", 47.0, 41.2), ("B1", 66.0, 62.2)]
-)
+@pytest.mark.parametrize(("bead", "estimate", "exact"), [("B2", 22.3, 18.5), ("B3", 47.0, 41.2), ("B1", 66.0, 62.2)])
 def test_bead_as_inductance_is_a_cautious_estimate(bead: str, estimate: float, exact: float) -> None:
     # L + L_bead in the closed form, evaluated apart.
     _, _, resistance, inductance, capacitance = LOOPS["G2"]
     added = float(BEADS[bead].section_inductance_h.sum())
-    zeta = damping_ratio(
-        resistance_ohm=resistance, inductance_h=inductance + added, capacitance_f=capacitance
-    )
+    zeta = damping_ratio(resistance_ohm=resistance, inductance_h=inductance + added, capacitance_f=capacitance)
     assert 100.0 * float(overshoot_ratio(loop_damping_ratio=zeta)) == pytest.approx(estimate, rel=1e-2)
     _, figures = edge("G2", bead)
     assert 100.0 * float(figures.overshoot_ratio) == pytest.approx(exact, rel=5e-3)
@@ -245,27 +239,17 @@ def test_scaling(network: GateLoop, impedance: float, time: float) -> None:
     assert float(after.peak_current_a) * impedance == pytest.approx(float(before.peak_current_a), rel=1e-6)
     assert float(after.overshoot_ratio) == pytest.approx(float(before.overshoot_ratio), rel=1e-6, abs=1e-9)
     assert float(after.half_time_s) == pytest.approx(time * float(before.half_time_s), rel=1e-6)
-    assert float(ring_mode(scaled).damping_ratio) == pytest.approx(
-        float(ring_mode(network).damping_ratio), rel=1e-6
-    )
+    assert float(ring_mode(scaled).damping_ratio) == pytest.approx(float(ring_mode(network).damping_ratio), rel=1e-6)
 
 
 @given(resistance=st.floats(0.2, 30.0), inductance=st.floats(1e-9, 1e-7), capacitance=st.floats(1e-10, 3e-8))
 @settings(max_examples=60, deadline=None)
-def test_equals_the_closed_form_without_bead(
-    resistance: float, inductance: float, capacitance: float
-) -> None:
-    figures = edge_figures(
-        step_response(plain_loop(resistance, inductance, capacitance)), start_v=0.0, final_v=1.0
-    )
+def test_equals_the_closed_form_without_bead(resistance: float, inductance: float, capacitance: float) -> None:
+    figures = edge_figures(step_response(plain_loop(resistance, inductance, capacitance)), start_v=0.0, final_v=1.0)
     zeta = damping_ratio(resistance_ohm=resistance, inductance_h=inductance, capacitance_f=capacitance)
-    peak = peak_current_a(
-        step_v=1.0, loop_damping_ratio=zeta, characteristic_ohm=np.sqrt(inductance / capacitance)
-    )
+    peak = peak_current_a(step_v=1.0, loop_damping_ratio=zeta, characteristic_ohm=np.sqrt(inductance / capacitance))
     assert float(figures.peak_current_a) == pytest.approx(float(peak), rel=3e-5)
-    assert float(figures.overshoot_ratio) == pytest.approx(
-        float(overshoot_ratio(loop_damping_ratio=zeta)), abs=3e-5
-    )
+    assert float(figures.overshoot_ratio) == pytest.approx(float(overshoot_ratio(loop_damping_ratio=zeta)), abs=3e-5)
 
 
 def test_off_edge_mirrors_the_on_edge() -> None:
@@ -297,9 +281,7 @@ def test_corners_give_the_same_as_one_by_one() -> None:
             for field in dataclasses.fields(EdgeFigures):
                 value = getattr(figures, field.name)[row, column]
                 assert float(value) == pytest.approx(float(getattr(single, field.name)), rel=1e-9)
-            assert float(damping[row, column]) == pytest.approx(
-                float(ring_mode(alone).damping_ratio), rel=1e-9
-            )
+            assert float(damping[row, column]) == pytest.approx(float(ring_mode(alone).damping_ratio), rel=1e-9)
 
 
 def test_time_to_a_level() -> None:

@@ -20,9 +20,7 @@ from gatecheck.physics.inductance import (
 MM, NH = 1e-3, 1e-9
 
 
-@pytest.mark.parametrize(
-    ("length_mm", "radius_mm", "uniform_nh"), [(10.0, 0.25, 7.31374), (25.4, 0.254, 23.15613)]
-)
+@pytest.mark.parametrize(("length_mm", "radius_mm", "uniform_nh"), [(10.0, 0.25, 7.31374), (25.4, 0.254, 23.15613)])
 def test_round_wire(length_mm: float, radius_mm: float, uniform_nh: float) -> None:
     # Rosa 1908, formula of p. 301 ff. evaluated apart.
     found = round_wire_h(length_m=length_mm * MM, radius_m=radius_mm * MM)
@@ -51,9 +49,7 @@ def test_parallel_filaments(distance_mm: float, expected_nh: float) -> None:
 
 def test_offset_filaments() -> None:
     # Closed form and numerical quadrature, apart.
-    found = offset_filaments_h(
-        first_length_m=10 * MM, second_length_m=5 * MM, gap_m=2 * MM, distance_m=1 * MM
-    )
+    found = offset_filaments_h(first_length_m=10 * MM, second_length_m=5 * MM, gap_m=2 * MM, distance_m=1 * MM)
     assert float(found) == pytest.approx(0.603102 * NH, rel=1e-6)
 
 
@@ -81,9 +77,7 @@ def test_rectangular_bar(
     length_mm: float, width_mm: float, thickness_mm: float, formula_nh: float, exact_nh: float
 ) -> None:
     # Grover's formula evaluated apart; the exact volume integral with 50 digits and by quadrature.
-    found = float(
-        rectangular_bar_h(length_m=length_mm * MM, width_m=width_mm * MM, thickness_m=thickness_mm * MM)
-    )
+    found = float(rectangular_bar_h(length_m=length_mm * MM, width_m=width_mm * MM, thickness_m=thickness_mm * MM))
     assert found == pytest.approx(formula_nh * NH, rel=1e-6)
     slender = length_mm >= 10.0 * width_mm
     assert found == pytest.approx(exact_nh * NH, rel=3e-3 if slender else 0.05)
@@ -129,9 +123,7 @@ def test_offset_filaments_by_quadrature(length: float, other: float, gap: float,
 @given(length=st.floats(1e-3, 0.1), distance=st.floats(1e-4, 0.05))
 @settings(deadline=None)
 def test_equal_filaments_are_a_special_case(length: float, distance: float) -> None:
-    side_by_side = offset_filaments_h(
-        first_length_m=length, second_length_m=length, gap_m=-length, distance_m=distance
-    )
+    side_by_side = offset_filaments_h(first_length_m=length, second_length_m=length, gap_m=-length, distance_m=distance)
     assert float(side_by_side) == pytest.approx(
         float(parallel_filaments_h(length_m=length, distance_m=distance)), rel=1e-6
     )

@@ -56,9 +56,7 @@ def test_best_question_at_one_ohm() -> None:
     assert ranked[0].fixed_au == pytest.approx(4.38e-9, rel=1e-3)
     assert ranked[0].interval.low_au == pytest.approx(0.466, rel=2e-3)
     assert ranked[0].interval.high_au == pytest.approx(3.00, rel=3e-3)
-    assert [gain.interval.width_neper() for gain in ranked[:4]] == pytest.approx(
-        [1.86, 2.17, 2.17, 2.17], abs=0.01
-    )
+    assert [gain.interval.width_neper() for gain in ranked[:4]] == pytest.approx([1.86, 2.17, 2.17, 2.17], abs=0.01)
     assert ranked[-1].name == "external"
 
 
@@ -85,9 +83,7 @@ def test_corners_are_named() -> None:
         "input": 1.76e-9,
     }
     assert spread.at_high["loop"] == 6e-9
-    assert spread.interval.nominal_au == pytest.approx(
-        float(zeta({k: v.nominal_au for k, v in inputs(1.0).items()}))
-    )
+    assert spread.interval.nominal_au == pytest.approx(float(zeta({k: v.nominal_au for k, v in inputs(1.0).items()})))
 
 
 @given(external=st.floats(0.0, 20.0))

@@ -25,9 +25,7 @@ def test_gate_power() -> None:
 def test_resistor_gets_its_share() -> None:
     # 4.7 of 7.2 ohm: 7.442 mW and 0.3721 uJ (evaluated apart).
     share = 4.7 / 7.2
-    assert float(resistor_power_w(gate_power_w=22.8e-3, share_ratio=share)) == pytest.approx(
-        7.442e-3, rel=1e-4
-    )
+    assert float(resistor_power_w(gate_power_w=22.8e-3, share_ratio=share)) == pytest.approx(7.442e-3, rel=1e-4)
     assert float(resistor_pulse_j(gate_charge_c=95e-9, step_v=12.0, share_ratio=share)) == pytest.approx(
         0.3721e-6, rel=1e-4
     )
@@ -48,9 +46,7 @@ def test_rms_current(name: str, rms_a: float) -> None:
         gate_charge_c=3.3e-9 * 12.0, step_v=12.0, resistance_ohm=network.resistance_ohm
     )
     assert float(simple) == pytest.approx(float(exact), rel=1e-9)
-    found = gate_rms_current_a(
-        on_current_squared_a2_s=simple, off_current_squared_a2_s=exact, switching_hz=1e5
-    )
+    found = gate_rms_current_a(on_current_squared_a2_s=simple, off_current_squared_a2_s=exact, switching_hz=1e5)
     assert float(found) == pytest.approx(rms_a, rel=3e-5)
 
 
@@ -64,13 +60,9 @@ def test_bootstrap() -> None:
     charge = bootstrap_charge_c(
         gate_charge_c=60e-9, recovery_charge_c=20e-9, bias_current_a=0.15e-3, longest_on_s=10e-6
     )
-    assert float(supply_capacitance_f(charge_c=charge, allowed_droop_v=0.3)) == pytest.approx(
-        0.2717e-6, rel=2e-4
-    )
+    assert float(supply_capacitance_f(charge_c=charge, allowed_droop_v=0.3)) == pytest.approx(0.2717e-6, rel=2e-4)
 
 
 def test_arrays_broadcast() -> None:
-    found = gate_power_w(
-        gate_charge_c=np.array([[1e-9], [2e-9]]), step_v=np.array([5.0, 10.0]), switching_hz=1e6
-    )
+    found = gate_power_w(gate_charge_c=np.array([[1e-9], [2e-9]]), step_v=np.array([5.0, 10.0]), switching_hz=1e6)
     assert found == pytest.approx(np.array([[5e-3, 10e-3], [10e-3, 20e-3]]))

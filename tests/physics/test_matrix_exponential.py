@@ -37,9 +37,7 @@ def test_defective_matrix() -> None:
 def test_rotation_over_many_turns() -> None:
     # A lossless circuit: exp of a rotation generator is a rotation, after a thousand turns too.
     omega = 2.0 * np.pi * 1000.25
-    found = matrix_exponential(
-        state_matrix_per_s=np.array([[0.0, -omega], [omega, 0.0]]), time_s=np.array(1.0)
-    )
+    found = matrix_exponential(state_matrix_per_s=np.array([[0.0, -omega], [omega, 0.0]]), time_s=np.array(1.0))
     assert found == pytest.approx(np.array([[0.0, -1.0], [1.0, 0.0]]), abs=1e-11)
 
 

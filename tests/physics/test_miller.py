@@ -42,9 +42,9 @@ def test_bump_without_inductance() -> None:
         resistance_ohm=3.0, input_capacitance_f=1.5e-9, gate_drain_f=20e-12, slope_v_per_s=50e9, swing_v=400.0
     )
     assert float(found) == pytest.approx(2.49296, rel=1e-5)
-    assert float(
-        charge_divider_v(gate_drain_charge_c=400.0 * 20e-12, input_capacitance_f=1.5e-9)
-    ) == pytest.approx(5.333, rel=1e-4)
+    assert float(charge_divider_v(gate_drain_charge_c=400.0 * 20e-12, input_capacitance_f=1.5e-9)) == pytest.approx(
+        5.333, rel=1e-4
+    )
 
 
 @pytest.mark.parametrize("row", BUMPS)
@@ -173,14 +173,10 @@ def test_critical_slope_and_resistance() -> None:
 
 
 def test_no_margin_is_reached_at_once() -> None:
-    found = lowest_reaching(
-        by_slope(3.0, 20e-12, 1.5e-9, 400.0), margin_v=np.array([0.0, -1.0, 2.5]), largest_au=1e12
-    )
+    found = lowest_reaching(by_slope(3.0, 20e-12, 1.5e-9, 400.0), margin_v=np.array([0.0, -1.0, 2.5]), largest_au=1e12)
     assert found == pytest.approx([0.0, 0.0, 50.2217e9], rel=1e-5)
 
 
 def test_common_source_voltage() -> None:
     # 15 nH at 10 A/ns would be 150 V (a power module maker's article quotes the same numbers).
-    assert float(common_source_v(source_inductance_h=15e-9, current_slope_a_per_s=10e9)) == pytest.approx(
-        150.0
-    )
+    assert float(common_source_v(source_inductance_h=15e-9, current_slope_a_per_s=10e9)) == pytest.approx(150.0)

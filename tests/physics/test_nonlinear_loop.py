@@ -49,9 +49,7 @@ def test_charge_curve() -> None:
 
 def test_linear_capacitance_of_the_same_charge_is_off() -> None:
     # Q / V in the linear formula: 3.3686 A and 14.25 % (closed form evaluated apart).
-    figures = edge_figures(
-        step_response(plain_loop(2.0, 12e-9, 39.9928e-9 / 12.0)), start_v=0.0, final_v=12.0
-    )
+    figures = edge_figures(step_response(plain_loop(2.0, 12e-9, 39.9928e-9 / 12.0)), start_v=0.0, final_v=12.0)
     assert float(figures.peak_current_a) == pytest.approx(3.3686, rel=1e-4)
     assert 100.0 * float(figures.overshoot_ratio) == pytest.approx(14.25, rel=1e-3)
 
@@ -90,9 +88,7 @@ def test_small_signals_equal_the_linear_loop(bead: str | None, start_v: float, f
         edge_figures(response, start_v=start_v, final_v=final_v)
         for response in (
             step_response(network),
-            nonlinear_edge(
-                network, start_v=start_v, final_v=final_v, saturation=Saturation(half_current_a=1e6)
-            ),
+            nonlinear_edge(network, start_v=start_v, final_v=final_v, saturation=Saturation(half_current_a=1e6)),
         )
     )
     for field in dataclasses.fields(linear):
@@ -105,9 +101,7 @@ def test_small_signals_equal_the_linear_loop(bead: str | None, start_v: float, f
 def test_a_straight_curve_is_a_capacitance() -> None:
     straight = ChargeCurve(charge_c=np.array([0.0, 33e-9]), voltage_v=np.array([0.0, 10.0]))
     by_curve, by_capacitance = (
-        edge_figures(
-            nonlinear_edge(loop("G1"), start_v=-5.0, final_v=15.0, charge=curve), start_v=-5.0, final_v=15.0
-        )
+        edge_figures(nonlinear_edge(loop("G1"), start_v=-5.0, final_v=15.0, charge=curve), start_v=-5.0, final_v=15.0)
         for curve in (straight, None)
     )
     assert float(by_curve.peak_current_a) == pytest.approx(float(by_capacitance.peak_current_a), rel=1e-6)
@@ -117,9 +111,7 @@ def test_a_straight_curve_is_a_capacitance() -> None:
 def test_a_plateau_holds_the_gate() -> None:
     # 20 nC at a constant 5 V through 10 ohm from 12 V: 20 nC / 0.7 A, and the current stands still there (Q =
     # I t).
-    plateau = ChargeCurve(
-        charge_c=np.array([0.0, 10e-9, 30e-9, 45e-9]), voltage_v=np.array([0.0, 5.0, 5.0, 12.0])
-    )
+    plateau = ChargeCurve(charge_c=np.array([0.0, 10e-9, 30e-9, 45e-9]), voltage_v=np.array([0.0, 5.0, 5.0, 12.0]))
     response = nonlinear_edge(plain_loop(10.0, 1e-9, 2.5e-9), start_v=0.0, final_v=12.0, charge=plateau)
     on_plateau = np.abs(12.0 * response.gate.value_au - 5.0) < 1e-6
     duration = np.ptp(response.gate.time_s[on_plateau])
@@ -143,9 +135,7 @@ def test_corners_give_the_same_as_one_by_one() -> None:
     for place, ratio in enumerate((0.5, 1.0, 2.0)):
         alone = edge_figures(
             nonlinear_edge(
-                dataclasses.replace(
-                    loop("G2", without_capacitance(BEADS["B3"])), resistance_ohm=resistances[place]
-                ),
+                dataclasses.replace(loop("G2", without_capacitance(BEADS["B3"])), resistance_ohm=resistances[place]),
                 start_v=0.0,
                 final_v=12.0,
                 charge=dataclasses.replace(CURVE, charge_ratio=ratio),

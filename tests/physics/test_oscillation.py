@@ -54,9 +54,7 @@ def test_smallest_resistance_that_cures(device: SwitchBranch, expected: float) -
     assert cure(device) == pytest.approx(expected, rel=1e-5)
 
 
-@pytest.mark.parametrize(
-    ("source_nh", "expected"), [(0.0, 0.339), (0.1, 0.0), (0.5, 0.0), (1.0, 0.950), (2.0, 3.959)]
-)
+@pytest.mark.parametrize(("source_nh", "expected"), [(0.0, 0.339), (0.1, 0.0), (0.5, 0.0), (1.0, 0.950), (2.0, 3.959)])
 def test_the_cure_is_not_monotone_in_source_inductance(source_nh: float, expected: float) -> None:
     # Eigenvalues of a matrix written apart.
     found = cure(dataclasses.replace(SET_Q, source_inductance_h=source_nh * N))
@@ -146,9 +144,7 @@ def test_sweep_of_a_stable_switch_has_no_window() -> None:
 def test_sweep_of_many_corners_at_once() -> None:
     resistances = np.array([[1.0], [4.0]])
     drains = np.array([12 * P, 40 * P, 90 * P])
-    device = dataclasses.replace(
-        SET_Q, gate_resistance_ohm=resistances, gate_drain_f=drains, source_inductance_h=2 * N
-    )
+    device = dataclasses.replace(SET_Q, gate_resistance_ohm=resistances, gate_drain_f=drains, source_inductance_h=2 * N)
     found = sweep_transconductance(
         by_gain(odd_mode_poles_per_s, device),
         maximum_siemens=np.full((1, 1), 40.0),
@@ -156,9 +152,7 @@ def test_sweep_of_many_corners_at_once() -> None:
     assert found.growth_per_s.shape == (2, 3)
     alone = sweep_transconductance(
         lambda gain: odd_mode_poles_per_s(
-            dataclasses.replace(
-                device, gate_resistance_ohm=4.0, gate_drain_f=40 * P, transconductance_siemens=gain
-            )
+            dataclasses.replace(device, gate_resistance_ohm=4.0, gate_drain_f=40 * P, transconductance_siemens=gain)
         ),
         maximum_siemens=40.0,
     )
@@ -171,9 +165,9 @@ def test_sweep_of_many_corners_at_once() -> None:
 def test_sweep_equals_a_dense_one() -> None:
     # Second opinion: 4000 transconductances instead of 24.
     gains = np.geomspace(0.1, 200.0, 4000)
-    dense = fastest_mode(
-        poles_per_s=odd_mode_poles_per_s(dataclasses.replace(SET_O2, transconductance_siemens=gains))
-    )[0]
+    dense = fastest_mode(poles_per_s=odd_mode_poles_per_s(dataclasses.replace(SET_O2, transconductance_siemens=gains)))[
+        0
+    ]
     found = sweep_transconductance(
         by_gain(odd_mode_poles_per_s, SET_O2),
         maximum_siemens=200.0,

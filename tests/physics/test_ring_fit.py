@@ -60,8 +60,7 @@ def test_scatter_reaches_the_bound(name: str) -> None:
     rng = np.random.default_rng(20)
     clean = record.samples()
     rings = [
-        fit_ring(sample_au=clean + record.noise * rng.normal(size=clean.size), step_s=record.step_s)
-        for _ in range(200)
+        fit_ring(sample_au=clean + record.noise * rng.normal(size=clean.size), step_s=record.step_s) for _ in range(200)
     ]
     frequencies = np.array([ring.ring_hz for ring in rings]) / 1e6
     decays = np.array([ring.decay_per_s for ring in rings]) / 1e6
@@ -70,12 +69,8 @@ def test_scatter_reaches_the_bound(name: str) -> None:
     assert abs(frequencies.mean() - record.ring_mhz) < 0.3e-3 * record.frequency_bound_khz
     assert abs(decays.mean() - record.decay) < 0.3 * record.decay_bound
     # The standard errors that come with each fit are those of the bound.
-    assert np.mean([ring.ring_error_hz for ring in rings]) == pytest.approx(
-        1e3 * record.frequency_bound_khz, rel=0.03
-    )
-    assert np.mean([ring.decay_error_per_s for ring in rings]) == pytest.approx(
-        1e6 * record.decay_bound, rel=0.03
-    )
+    assert np.mean([ring.ring_error_hz for ring in rings]) == pytest.approx(1e3 * record.frequency_bound_khz, rel=0.03)
+    assert np.mean([ring.decay_error_per_s for ring in rings]) == pytest.approx(1e6 * record.decay_bound, rel=0.03)
     damping = np.array([ring.damping_ratio for ring in rings])
     assert damping.std() == pytest.approx(np.mean([ring.damping_error_ratio for ring in rings]), rel=0.15)
     assert np.mean([ring.noise_au for ring in rings]) == pytest.approx(record.noise, rel=0.02)
@@ -88,9 +83,7 @@ def test_scatter_reaches_the_bound(name: str) -> None:
 def test_closed_bound(name: str, closed: float) -> None:
     # Own closed form, evaluated apart; 0 to 2.5 % below the Fisher matrix.
     record = RECORDS[name]
-    bound = decay_error_bound_per_s(
-        noise_ratio=record.noise, decay_per_s=record.decay * 1e6, step_s=record.step_s
-    )
+    bound = decay_error_bound_per_s(noise_ratio=record.noise, decay_per_s=record.decay * 1e6, step_s=record.step_s)
     assert float(bound) / 1e6 == pytest.approx(closed, rel=1e-4)
     assert 0.975 <= closed / record.decay_bound <= 1.0
 
@@ -117,9 +110,7 @@ def test_ring_of_a_gate_loop() -> None:
 def test_a_settling_tail_needs_more_modes() -> None:
     record = RECORDS["slow"]
     time_us = np.arange(record.samples().size) * record.step_s * 1e6
-    ring = fit_ring(
-        sample_au=record.samples() + 0.2 * np.exp(-2.0 * time_us), step_s=record.step_s, has_tail=True
-    )
+    ring = fit_ring(sample_au=record.samples() + 0.2 * np.exp(-2.0 * time_us), step_s=record.step_s, has_tail=True)
     assert ring.ring_hz == pytest.approx(record.ring_mhz * 1e6, rel=2e-3)
 
 

@@ -48,8 +48,7 @@ def test_plain_loops(name: str, peak_a: float, time_ns: float, overshoot_percent
 def test_damping_ratios() -> None:
     # Closed form evaluated apart.
     found = [
-        float(damping_ratio(resistance_ohm=r, inductance_h=x, capacitance_f=c))
-        for _, _, r, x, c in LOOPS.values()
+        float(damping_ratio(resistance_ohm=r, inductance_h=x, capacitance_f=c)) for _, _, r, x, c in LOOPS.values()
     ]
     assert found == pytest.approx([0.35178, 1.28986, 0.46233, 0.28402], rel=2e-5)
 
@@ -78,13 +77,9 @@ def test_peak_is_smooth_through_critical_damping() -> None:
 
 @given(resistance=st.floats(0.1, 50.0), inductance=st.floats(1e-10, 1e-6), capacitance=st.floats(1e-11, 1e-7))
 @settings(deadline=None)
-def test_needed_resistance_gives_the_damping(
-    resistance: float, inductance: float, capacitance: float
-) -> None:
+def test_needed_resistance_gives_the_damping(resistance: float, inductance: float, capacitance: float) -> None:
     zeta = damping_ratio(resistance_ohm=resistance, inductance_h=inductance, capacitance_f=capacitance)
-    needed = resistance_for_damping_ohm(
-        minimum_damping_ratio=zeta, inductance_h=inductance, capacitance_f=capacitance
-    )
+    needed = resistance_for_damping_ohm(minimum_damping_ratio=zeta, inductance_h=inductance, capacitance_f=capacitance)
     assert float(needed) == pytest.approx(resistance)
 
 
@@ -101,22 +96,16 @@ def test_bead_limit_is_where_the_damping_falls_to_the_minimum(
             capacitance_f=capacitance,
         )
     )
-    zeta = damping_ratio(
-        resistance_ohm=resistance, inductance_h=inductance + limit, capacitance_f=capacitance
-    )
+    zeta = damping_ratio(resistance_ohm=resistance, inductance_h=inductance + limit, capacitance_f=capacitance)
     assert float(zeta) == pytest.approx(0.5)
 
 
 def test_decrement() -> None:
     # 2.10 V to 1.05 V: ln 2, zeta 0.1097; 2.10 to 0.30 V over four periods: 0.4865, 0.0772 (evaluated apart).
-    assert float(damping_from_decrement_ratio(log_decrement_neper=np.log(2.0))) == pytest.approx(
-        0.1097, abs=5e-5
-    )
+    assert float(damping_from_decrement_ratio(log_decrement_neper=np.log(2.0))) == pytest.approx(0.1097, abs=5e-5)
     over_four = np.log(2.10 / 0.30) / 4.0
     assert float(over_four) == pytest.approx(0.4865, abs=5e-5)
-    assert float(damping_from_decrement_ratio(log_decrement_neper=over_four)) == pytest.approx(
-        0.0772, abs=5e-5
-    )
+    assert float(damping_from_decrement_ratio(log_decrement_neper=over_four)) == pytest.approx(0.0772, abs=5e-5)
 
 
 @given(zeta=st.floats(1e-6, 0.999))
@@ -135,9 +124,7 @@ def test_two_capacitor_identification() -> None:
     # apart).
     capacitance = capacitance_from_added_f(added_capacitance_f=1e-9, ring_hz=42e6, ring_with_added_hz=33e6)
     assert float(capacitance) == pytest.approx(1.613e-9, rel=5e-4)
-    assert float(inductance_from_ring_h(capacitance_f=capacitance, ring_hz=42e6)) == pytest.approx(
-        8.90e-9, rel=1e-3
-    )
+    assert float(inductance_from_ring_h(capacitance_f=capacitance, ring_hz=42e6)) == pytest.approx(8.90e-9, rel=1e-3)
     damped = inductance_from_ring_h(capacitance_f=capacitance, ring_hz=42e6, loop_damping_ratio=0.1097)
     assert float(damped) == pytest.approx(8.79e-9, rel=1e-3)
 
@@ -160,9 +147,7 @@ def test_identification_is_touchy(reading_error: float, low_nf: float, high_nf: 
     assert (corners * 1e9).tolist() == pytest.approx([low_nf, high_nf], abs=0.012)
 
 
-@pytest.mark.parametrize(
-    ("input_pf", "shift"), [(3000.0, -0.0017), (240.0, -0.020), (200.0, -0.024), (65.0, -0.069)]
-)
+@pytest.mark.parametrize(("input_pf", "shift"), [(3000.0, -0.0017), (240.0, -0.020), (200.0, -0.024), (65.0, -0.069)])
 def test_a_probe_shifts_the_ring(input_pf: float, shift: float) -> None:
     # 10 pF of a passive probe beside the node's own capacitance (evaluated apart).
     with_probe, without = (

@@ -59,12 +59,8 @@ def test_half_transmission() -> None:
 def test_error_gain(impedance: float, series_percent: float, shunt_percent: float) -> None:
     # One percent more of S21 itself, carried through the exact conversion.
     in_series, in_shunt = 100.0 / (100.0 + impedance), 2.0 * impedance / (2.0 * impedance + 50.0)
-    series = series_transmission_impedance_ohm(
-        transmission_ratio=np.array(1.01 * in_series + 0j), reference_ohm=50.0
-    )
-    shunt = shunt_transmission_impedance_ohm(
-        transmission_ratio=np.array(1.01 * in_shunt + 0j), reference_ohm=50.0
-    )
+    series = series_transmission_impedance_ohm(transmission_ratio=np.array(1.01 * in_series + 0j), reference_ohm=50.0)
+    shunt = shunt_transmission_impedance_ohm(transmission_ratio=np.array(1.01 * in_shunt + 0j), reference_ohm=50.0)
     assert 100.0 * abs(complex(series) / impedance - 1.0) == pytest.approx(series_percent, rel=0.05)
     assert 100.0 * abs(complex(shunt) / impedance - 1.0) == pytest.approx(shunt_percent, rel=0.05)
 
@@ -95,10 +91,7 @@ def network(
     from skrf import network as skrf
 
     ones, none = np.ones(part_ohm.size), np.zeros(part_ohm.size)
-    if series:
-        part = np.array([[ones, part_ohm], [none, ones]])
-    else:
-        part = np.array([[ones, none], [1.0 / part_ohm, ones]])
+    part = np.array([[ones, part_ohm], [none, ones]] if series else [[ones, none], [1.0 / part_ohm, ones]])
     pad = np.array([[ones, none], [2j * np.pi * FREQUENCY_HZ * pads_f, ones]])
     lead = np.array([[ones, 2j * np.pi * FREQUENCY_HZ * lead_h], [none, ones]])
     chain = np.einsum("abn,bcn,cdn,den,efn->naf", lead, pad, part, pad, lead)

@@ -97,9 +97,7 @@ def test_a_mode_faster_than_the_step_dies() -> None:
 
 def test_corners_have_their_own_steps() -> None:
     starts = np.array([[2.0, 0.0], [0.1, 0.0], [1.0, 1.0]])
-    together = integrate(
-        VanDerPol(5.0), start_au=starts, duration_s=np.array([10.0, 3.0, 7.0]), scale_au=np.ones(2)
-    )
+    together = integrate(VanDerPol(5.0), start_au=starts, duration_s=np.array([10.0, 3.0, 7.0]), scale_au=np.ones(2))
     assert together.time_s[:, -1] == pytest.approx([10.0, 3.0, 7.0])
     for place, (start, end) in enumerate(zip(starts, (10.0, 3.0, 7.0), strict=True)):
         alone = integrate(VanDerPol(5.0), start_au=start, duration_s=end, scale_au=np.ones(2))

@@ -103,9 +103,7 @@ def test_unequal_devices_keep_it() -> None:
 
 def test_small_source_inductance_is_stable() -> None:
     # Q with 0.3 nH and 1 ohm; ngspice-39 .pz is identical.
-    poles = single_switch_poles_per_s(
-        dataclasses.replace(SET_Q, gate_resistance_ohm=1.0, source_inductance_h=0.3 * N)
-    )
+    poles = single_switch_poles_per_s(dataclasses.replace(SET_Q, gate_resistance_ohm=1.0, source_inductance_h=0.3 * N))
     assert spectrum(poles) == pytest.approx([-74.451, -301.992 + 145.591j, -1044.945], rel=1e-5)
 
 
@@ -262,9 +260,7 @@ def test_corners_give_the_same_as_one_by_one() -> None:
     gains, resistances = np.array([[1.0], [40.0]]), np.array([0.5, 2.0, 5.0])
     bead = BEADS["B2"]
     together = odd_mode_poles_per_s(
-        dataclasses.replace(
-            SET_O2, transconductance_siemens=gains, gate_resistance_ohm=resistances, bead=bead
-        )
+        dataclasses.replace(SET_O2, transconductance_siemens=gains, gate_resistance_ohm=resistances, bead=bead)
     )
     assert together.shape == (2, 3, 6)
     alone = odd_mode_poles_per_s(
@@ -281,9 +277,7 @@ def test_bead_with_series_inductance_and_without_capacitance() -> None:
         series_inductance_h=np.array(5 * N),
         capacitance_f=np.array(0.0),
     )
-    with_bead = dominant_growth_per_s(
-        poles_per_s=single_switch_poles_per_s(dataclasses.replace(SET_P, bead=bare))
-    )
+    with_bead = dominant_growth_per_s(poles_per_s=single_switch_poles_per_s(dataclasses.replace(SET_P, bead=bare)))
     with_lead = dominant_growth_per_s(
         poles_per_s=single_switch_poles_per_s(
             dataclasses.replace(SET_P, gate_resistance_ohm=0.7, gate_inductance_h=11 * N)

@@ -44,23 +44,17 @@ def test_loss_grows_with_resistance() -> None:
 
 
 def test_off_edge_current_counts_from_the_other_rail() -> None:
-    assert float(plateau_current_a(driver_v=-4.0, plateau_v=8.0, resistance_ohm=5.5)) == pytest.approx(
-        12.0 / 5.5
-    )
+    assert float(plateau_current_a(driver_v=-4.0, plateau_v=8.0, resistance_ohm=5.5)) == pytest.approx(12.0 / 5.5)
 
 
 def test_a_level_beyond_the_driver_is_never_reached() -> None:
-    found = charging_time_s(
-        time_constant_s=1e-9, driver_v=12.0, from_v=0.0, to_v=np.array([11.9, 12.0, 13.0])
-    )
+    found = charging_time_s(time_constant_s=1e-9, driver_v=12.0, from_v=0.0, to_v=np.array([11.9, 12.0, 13.0]))
     assert np.isnan(found).tolist() == [False, True, True]
 
 
 def test_drain_slope() -> None:
     # 1.4 A into 30 pF is 46.7 V/ns (I = C dV/dt).
-    assert float(drain_slope_v_per_s(plateau_current_a=1.4, gate_drain_f=30e-12)) == pytest.approx(
-        46.67e9, rel=1e-3
-    )
+    assert float(drain_slope_v_per_s(plateau_current_a=1.4, gate_drain_f=30e-12)) == pytest.approx(46.67e9, rel=1e-3)
 
 
 def test_source_inductance_delay() -> None:

@@ -6,9 +6,7 @@ import pytest
 from gatecheck.physics.trajectory import Trajectory, first_crossing_s, first_maxima, maximum, value_at
 
 
-def ring(
-    frequency_hz: float, decay_per_s: float, *, points: int = 61, with_curvature: bool = True
-) -> Trajectory:
+def ring(frequency_hz: float, decay_per_s: float, *, points: int = 61, with_curvature: bool = True) -> Trajectory:
     """exp(-a t) sin(w t) over five periods with its exact derivatives."""
     time_s = np.linspace(0.0, 5.0 / frequency_hz, points)
     rate = complex(-decay_per_s, 2.0 * np.pi * frequency_hz)
@@ -43,9 +41,7 @@ def test_without_curvature_the_polynomial_is_cubic() -> None:
 
 def test_maximum_at_the_ends() -> None:
     time_s = np.linspace(0.0, 1.0, 5)
-    rising = Trajectory(
-        time_s=time_s, value_au=time_s, slope_au_per_s=np.ones(5), curvature_au_per_s2=np.zeros(5)
-    )
+    rising = Trajectory(time_s=time_s, value_au=time_s, slope_au_per_s=np.ones(5), curvature_au_per_s2=np.zeros(5))
     assert [float(part) for part in maximum(rising)] == [1.0, 1.0]
     assert [float(part) for part in maximum(rising.scaled(factor_ratio=-1.0))] == [0.0, 0.0]
 
@@ -112,9 +108,5 @@ def test_equal_neighbours_do_no_harm() -> None:
         time_s=one.time_s[order], value_au=one.value_au[order], slope_au_per_s=one.slope_au_per_s[order]
     )
     plain = Trajectory(time_s=one.time_s, value_au=one.value_au, slope_au_per_s=one.slope_au_per_s)
-    assert [float(part) for part in maximum(doubled)] == pytest.approx(
-        [float(part) for part in maximum(plain)]
-    )
-    assert float(first_crossing_s(doubled, level_au=0.5)) == pytest.approx(
-        float(first_crossing_s(plain, level_au=0.5))
-    )
+    assert [float(part) for part in maximum(doubled)] == pytest.approx([float(part) for part in maximum(plain)])
+    assert float(first_crossing_s(doubled, level_au=0.5)) == pytest.approx(float(first_crossing_s(plain, level_au=0.5)))

@@ -126,9 +126,7 @@ def test_step_of_an_edge(name: str, edge: str, *, with_bead: bool) -> None:
     start, final = case_swing(name, edge)
     response = step_response(network)
     figures = edge_figures(response, start_v=start, final_v=final)
-    assert float(figures.extreme_v) == pytest.approx(
-        expected["Vgs_extreme"], rel=1e-3, abs=1e-3 * abs(final - start)
-    )
+    assert float(figures.extreme_v) == pytest.approx(expected["Vgs_extreme"], rel=1e-3, abs=1e-3 * abs(final - start))
     assert float(figures.overshoot_ratio) == pytest.approx(expected["overshoot"], rel=2e-3, abs=2e-5)
     assert float(figures.peak_current_a) == close(expected["Ipk"], 1e-3)
     level = CASES[name]["plateau_v"]
@@ -206,14 +204,10 @@ def test_power_and_supply(name: str) -> None:
         assert float(found) == close(expected[key])
     peak = resistor_peak_power_w(peak_current_a=swing / resistances["on"], resistance_ohm=case["r_on"])
     assert float(peak) == close(expected["Ppk_Ron"])
-    pulse = resistor_pulse_j(
-        gate_charge_c=case["qg"], step_v=swing, share_ratio=case["r_on"] / resistances["on"]
-    )
+    pulse = resistor_pulse_j(gate_charge_c=case["qg"], step_v=swing, share_ratio=case["r_on"] / resistances["on"])
     assert float(pulse) == close(expected["Epulse_Ron"])
     on, off = (
-        resistive_current_squared_a2_s(
-            gate_charge_c=case["qg"], step_v=swing, resistance_ohm=resistances[edge]
-        )
+        resistive_current_squared_a2_s(gate_charge_c=case["qg"], step_v=swing, resistance_ohm=resistances[edge])
         for edge in ("on", "off")
     )
     rms = gate_rms_current_a(on_current_squared_a2_s=on, off_current_squared_a2_s=off, switching_hz=case["f"])
@@ -282,9 +276,7 @@ def test_a_smaller_bead_also_saves_case_b() -> None:
     assert abs(complex(impedance_ohm(bead, frequency_hz=1e8))) == close(19.7, 3e-3)
     network = dataclasses.replace(case_loop("B", "off", bead), resistance_ohm=np.array(6.5))
     assert float(ring_mode(network).damping_ratio) == close(0.685, 2e-3)
-    assert float(edge_figures(step_response(network), start_v=12.0, final_v=0.0).extreme_v) == close(
-        -0.63, 6e-3
-    )
+    assert float(edge_figures(step_response(network), start_v=12.0, final_v=0.0).extreme_v) == close(-0.63, 6e-3)
 
 
 @pytest.mark.parametrize(

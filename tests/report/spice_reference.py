@@ -42,14 +42,9 @@ def draw(rng: np.random.Generator, name: str) -> dict[str, Any]:
         return float(f"{np.exp(rng.uniform(np.log(low), np.log(high))):.4g}")
 
     place = int(name[1:])
-    bead = (
-        None
-        if place % 4 == 0
-        else draw_bead(between, sections=1 if place % 4 == 1 else 3, series=place % 4 == 3)
-    )
+    bead = None if place % 4 == 0 else draw_bead(between, sections=1 if place % 4 == 1 else 3, series=place % 4 == 3)
     edges = {
-        edge: {"resistance_ohm": between(0.8, 12.0), "inductance_h": between(2e-9, 3e-8)}
-        for edge in ("on", "off")
+        edge: {"resistance_ohm": between(0.8, 12.0), "inductance_h": between(2e-9, 3e-8)} for edge in ("on", "off")
     }
     capacitance = between(2e-10, 8e-9)
     swing = [(0.0, 12.0), (-4.0, 18.0), (0.0, 6.0), (-8.0, 15.0)][place % 4]
@@ -129,9 +124,7 @@ def durations(network: dict[str, Any]) -> dict[str, float]:
     growth, frequency = predicted(network)
     active = GROWTH_NEPER / growth if growth > 0.02 * frequency else DECAY_PERIODS / frequency
     lengths = {
-        edge: float(
-            record_length_s(state_matrix_per_s=loop_states(loop_of(network, edge)).state_matrix_per_s)
-        )
+        edge: float(record_length_s(state_matrix_per_s=loop_states(loop_of(network, edge)).state_matrix_per_s))
         for edge in ("on", "off")
     }
     return {key: float(f"{value:.4g}") for key, value in {**lengths, "active": active}.items()}
@@ -158,9 +151,7 @@ def decks(network: dict[str, Any]) -> dict[str, str]:
 
 
 def simulated(path: Path) -> str:
-    finished = subprocess.run(
-        [*COMMAND, path.name], cwd=path.parent, capture_output=True, text=True, check=True
-    )
+    finished = subprocess.run([*COMMAND, path.name], cwd=path.parent, capture_output=True, text=True, check=True)
     return finished.stdout
 
 

@@ -48,9 +48,7 @@ DECKS = {
     "saturation": nonlinear_edge_deck(
         loop("G2", BEADS["B3"]), title="bead", swing_v=(0.0, 12.0), saturation=Saturation(half_current_a=0.5)
     ),
-    "bump": bump_deck(
-        loop("G2", BEADS["B2"]), title="bump", gate_drain_f=2e-11, slope_v_per_s=5e10, swing_v=400.0
-    ),
+    "bump": bump_deck(loop("G2", BEADS["B2"]), title="bump", gate_drain_f=2e-11, slope_v_per_s=5e10, swing_v=400.0),
     "oscillation": oscillation_deck([SET_P], SharedLeads(), title="one", duration_s=1e-6),
     "kelvin": oscillation_deck(
         [dataclasses.replace(SET_O2, kelvin_inductance_h=5e-9, output_siemens=0.01, bead=BEADS["B2"])],
@@ -58,12 +56,8 @@ DECKS = {
         title="kelvin",
         duration_s=5e-8,
     ),
-    "parallel": oscillation_deck(
-        [SET_O2, SET_O2], SHARED, title="two", kicks_v=(1e-3, -1e-3), duration_s=5e-8
-    ),
-    "turn-on": turn_on_deck(
-        loop("G2", BEADS["B2"]), SWITCH, title="turn-on", swing_v=(0.0, 12.0), duration_s=3e-7
-    ),
+    "parallel": oscillation_deck([SET_O2, SET_O2], SHARED, title="two", kicks_v=(1e-3, -1e-3), duration_s=5e-8),
+    "turn-on": turn_on_deck(loop("G2", BEADS["B2"]), SWITCH, title="turn-on", swing_v=(0.0, 12.0), duration_s=3e-7),
 }
 
 
