@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 import argparse
+import contextlib
 import os
 import sys
 from pathlib import Path
@@ -16,6 +17,8 @@ if TYPE_CHECKING:
     from gatecheck.report_model import Report, Unread
 
 OK, FINDINGS, USAGE, UNREADABLE, FAULT = range(5)
+# One bad form tells enough; a file of nothing else would fill the screen.
+_MOST_COMPLAINTS = 20
 
 _EPILOG = """\
 examples:
@@ -43,10 +46,6 @@ def main(arguments: Sequence[str] | None = None) -> int:
             stream.reconfigure(errors="backslashreplace")
     try:
         return _guarded(options)
-    except BrokenPipeError:
-        # The reader of a pipe went away: not our fault, and no traceback.
-        os.dup2(os.open(os.devnull, os.O_WRONLY), sys.stdout.fileno())
-        return OK
     except KeyboardInterrupt:
         return 130
 
@@ -57,8 +56,6 @@ def _guarded(options: argparse.Namespace) -> int:
 
     try:
         code: int = options.run(options)
-    except BrokenPipeError:
-        raise
     except InputError as why:
         _complain(why.message, why.next_step, why.excerpt, _place(why.path, why.line, why.column))
         return UNREADABLE
@@ -73,7 +70,6 @@ def _guarded(options: argparse.Namespace) -> int:
         return _fault(options, why, str(why))
     except Exception as why:  # noqa: BLE001 (no traceback reaches a user)
         return _fault(options, why, f"{type(why).__name__}: {why}")
-    sys.stdout.flush()
     return code
 
 
@@ -94,11 +90,9 @@ def _complain(message: str, next_step: str, excerpt: str = "", place: str = "") 
     from gatecheck.report.wording import safe  # noqa: PLC0415 (after --help)
 
     where = f"{safe(place)}: " if place else ""
-    print(f"gatecheck: {where}{safe(message)}", file=sys.stderr)
-    if excerpt:
-        print(f"    {safe(excerpt)}", file=sys.stderr)
-    if next_step:
-        print(f"    {safe(next_step)}", file=sys.stderr)
+    lines = [f"gatecheck: {where}{safe(message)}", *(f"    {safe(line)}" for line in (excerpt, next_step) if line)]
+    with contextlib.suppress(OSError, ValueError):  # nobody listens to standard error: the exit code says it all
+        print("\n".join(lines), file=sys.stderr, flush=True)
 
 
 def _parser() -> argparse.ArgumentParser:
@@ -121,7 +115,7 @@ def _parser() -> argparse.ArgumentParser:
         choices=("note", "warning", "error"),
         help="level that makes the exit code 1 (default: what the project file says, else error)",
     )
-    shared.add_argument("-q", "--quiet", action="store_true", help="only what fails; nothing when all is well")
+    shared.add_argument("-q", "--quiet", action="store_true", help="review: only what fails; nothing when all is well")
     shared.add_argument("--color", choices=("auto", "always", "never"), default="auto", help="NO_COLOR is honoured too")
     shared.add_argument("-v", "--verbose", action="store_true", help="show the trace of a fault")
     paths = {"metavar": "PATH", "nargs": "+", "type": Path}
@@ -188,7 +182,7 @@ def _nets(options: argparse.Namespace) -> int:
         from gatecheck.report.to_terminal import nets_text  # noqa: PLC0415 (the same)
 
         _write(options, nets_text(loaded.source.path, nets, color=_colored(options)))
-    for trouble in loaded.troubles:
+    for trouble in loaded.troubles[:_MOST_COMPLAINTS]:
         _complain(
             trouble.message, trouble.next_step, trouble.excerpt, _place(trouble.path, trouble.line, trouble.column)
         )
@@ -212,11 +206,28 @@ def _rules(options: argparse.Namespace) -> int:
 
 def _write(options: argparse.Namespace, text: str) -> None:
     if options.output is None:
-        sys.stdout.write(text)
+        _show(text)
         return
     from gatecheck.files import write_text  # noqa: PLC0415 (only what is asked for)
 
     write_text(options.output, text)
+
+
+def _show(text: str) -> None:
+    """To standard output. A reader that went away has read enough; a full disk is said, and ends in 2."""
+    from gatecheck.errors import UsageError  # noqa: PLC0415 (after --help)
+
+    if sys.stdout is None:
+        return
+    try:
+        sys.stdout.write(text)
+        sys.stdout.flush()
+    except BrokenPipeError:
+        # Python flushes once more at exit; there must be something left to flush into.
+        os.dup2(os.open(os.devnull, os.O_WRONLY), sys.stdout.fileno())
+    except OSError as why:
+        os.dup2(os.open(os.devnull, os.O_WRONLY), sys.stdout.fileno())
+        raise UsageError(f"standard output cannot be written to ({why.strerror})", "use --output FILE") from None
 
 
 def _outcome(report: Report) -> int:

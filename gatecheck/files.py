@@ -12,8 +12,10 @@ from gatecheck.errors import InputError, UsageError
 if TYPE_CHECKING:
     from pathlib import Path
 
-# Our choice: the largest public boards seen are about 100 MB; twice that bounds memory and time.
+# Our choice: more than twice the largest public boards seen (about 100 MB); bounds memory and time.
 MAX_BYTES = 256 * 1024 * 1024
+# What a slip of the hand must not overwrite.
+_DESIGN_SUFFIXES = (".kicad_pcb", ".kicad_sch", ".kicad_pro", ".kicad_sym", ".net", ".sch", ".yaml", ".yml")
 
 
 def read_bytes(path: Path, *, max_bytes: int = MAX_BYTES) -> bytes:
@@ -32,10 +34,12 @@ def read_bytes(path: Path, *, max_bytes: int = MAX_BYTES) -> bytes:
         raise InputError("this file may not be read", "give read permission, then try again", shown) from None
     except (OSError, ValueError) as why:
         raise InputError(f"cannot be opened ({_reason(why)})", "name a design file", shown) from None
+    found = os.fstat(handle)
+    if not stat.S_ISREG(found.st_mode):
+        os.close(handle)
+        what = "this is a folder" if stat.S_ISDIR(found.st_mode) else "this is no regular file"
+        raise InputError(what, "name a design file", shown)
     with os.fdopen(handle, "rb") as stream:
-        found = os.fstat(stream.fileno())
-        if not stat.S_ISREG(found.st_mode):
-            raise InputError("this is no regular file", "name a design file, or the folder it lies in", shown)
         if found.st_size > max_bytes:
             raise InputError(
                 f"the file has {found.st_size / 1e6:.0f} MB; at most {max_bytes / 1e6:.0f} MB are read",
@@ -51,10 +55,18 @@ def read_bytes(path: Path, *, max_bytes: int = MAX_BYTES) -> bytes:
 def write_text(path: Path, text: str) -> None:
     """Write a report whole or not at all: into a file beside the target, then renamed.
 
+    A link is followed to what it names; a pipe or device is written to as it is.
+
     Raises:
-        UsageError: if the folder is missing or may not be written to.
+        UsageError: if the target is a design or project file, or may not be written to.
     """
+    if path.suffix.lower() in _DESIGN_SUFFIXES:
+        raise UsageError(f"{shown_path(path)}: a report is never written over a design", "name another file")
     try:
+        path = path.resolve()
+        if path.exists() and not path.is_file():
+            path.write_text(text, encoding="utf-8")
+            return
         handle, name = tempfile.mkstemp(dir=path.parent, prefix=f".{path.name}.")
         try:
             with os.fdopen(handle, "w", encoding="utf-8", newline="\n", errors="replace") as stream:

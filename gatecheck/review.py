@@ -11,6 +11,7 @@ from gatecheck.files import shown_path
 from gatecheck.finding import Finding, Level, Quantity, Spot, Verdict, at_least
 from gatecheck.load import Loaded, load_design, load_settings
 from gatecheck.networks.find import Networks, find_networks
+from gatecheck.networks.surroundings import name_of
 from gatecheck.parse.project import Project, find_projects
 from gatecheck.report_model import InputFile, NotJudged, Report, Reviewed, Unread
 
@@ -51,7 +52,11 @@ def review(paths: Iterable[Path], *, with_rules: bool = True, block_at: Level | 
             loaded = load_design(project.path)
             settings, file = load_settings(project.path)
         except InputError as why:
-            found.unread.append(_unread(why))
+            if project.named or project.path.suffix != ".net":
+                found.unread.append(_unread(why))
+            else:
+                # Other programs write .net files as well; one that lies in a named folder is not our business.
+                found.not_judged.append(NotJudged(None, why.path, why.message, "name the file to see why"))
             continue
         found.inputs += [loaded.source, *([file] if file is not None and file not in found.inputs else [])]
         new = _review_one(loaded, project, settings, found, with_rules=with_rules)
@@ -95,6 +100,7 @@ def _review_one(
         for other, reason in project.passed_over
     ]
     found.not_judged += [NotJudged(None, path, note, "") for note in loaded.document.notes]
+    found.not_judged += _unclear(networks, path)
     chains = _chains(loaded, networks) if with_rules and networks.gates else None
     design = rulekit.Design(networks, spot_finder(loaded), settings, chains)
     findings = _apply_rules(design, path) if with_rules else []
@@ -104,6 +110,15 @@ def _review_one(
     if with_rules:
         found.not_judged += _missing(design, path)
     return findings
+
+
+def _unclear(networks: Networks, path: str) -> list[NotJudged]:
+    """Transistors whose role the circuit does not tell: said, since a gate among them is not reviewed."""
+    names = [name_of(switch.transistor.key) for switch in networks.switches if switch.role == "unclear"]
+    if not names:
+        return []
+    reason = f"not clear whether {' '.join(names[:_MAX_TROUBLES])} switch or not (`gatecheck gates` shows the evidence)"
+    return [NotJudged(None, path, reason, "a field Role with switch, static, linear or small-signal on the part")]
 
 
 def _chains(loaded: Loaded, networks: Networks) -> Chains | None:

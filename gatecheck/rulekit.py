@@ -6,7 +6,7 @@ verdicts; what a fail may weigh follows from what it rests on, and is settled he
 
 from __future__ import annotations
 
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 from functools import cached_property
 from typing import TYPE_CHECKING
 
@@ -23,21 +23,23 @@ from gatecheck.finding import (
     fingerprint,
     least_trusted,
 )
+from gatecheck.networks.model import EdgePaths
 from gatecheck.quantities import Quantities
 
 if TYPE_CHECKING:
-    from collections.abc import Callable, Iterable, Iterator, Mapping, Sequence
+    from collections.abc import Callable, Iterable, Iterator, Sequence
 
     from gatecheck.copper.chain import Chains
     from gatecheck.design.model import Part
     from gatecheck.networks.find import Networks
-    from gatecheck.networks.model import EdgePaths, GateNetwork, Switch
+    from gatecheck.networks.model import GateNetwork, Switch
     from gatecheck.settings import Settings
 
 __all__ = [
     "Ask",
     "Bound",
     "Design",
+    "EdgePaths",
     "Finding",
     "Gate",
     "Level",
@@ -206,14 +208,12 @@ class Gate:
 
     @cached_property
     def kin(self) -> tuple[object, ...]:
-        """What like gates share: the transistor's value and package, and its side of the bridge."""
+        """What like gates share: transistor, package, place in a bridge or not, side of it, and sort of driver."""
         part = self._design.part(self.part)
-        return part.value, part.footprint, self._design.is_rail(self.network.transistor.source_net)
-
-    @cached_property
-    def drive(self) -> frozenset[tuple[str, str]]:
-        """The driver pins: gates with the same ones are one network."""
-        return frozenset((drive.part, pin.number) for drive in self.network.drives for pin in drive.pins)
+        drivers = tuple(sorted({self._design.part(drive.part).value for drive in self.network.drives}))
+        bridge = any(entry.name == "half_bridge" for entry in self.switch.evidence)
+        side = self._design.is_rail(self.network.transistor.source_net)
+        return part.value, part.footprint, bridge, side, drivers
 
 
 class Design:
@@ -254,7 +254,8 @@ class Design:
         if say.verdict is Verdict.FAIL and rests_on in WEAK_ORIGINS:
             message = f"likely: {message}"
         part = self.part(say.gate.part)
-        identity = part.symbol_path or say.gate.name
+        # Panels repeat symbols; the part's id tells the copies apart where the symbol does not.
+        identity = f"{part.symbol_path} {part.id}" if part.symbol_path else part.id
         return Finding(
             rule=rule.id,
             verdict=say.verdict,
@@ -291,17 +292,7 @@ def grouped(findings: Iterable[Finding]) -> list[Finding]:
 
 
 def _merged(group: list[Finding]) -> Finding:
-    from dataclasses import replace  # noqa: PLC0415
-
     first, *others = group
     places = tuple(dict.fromkeys(place for finding in group for place in finding.places))
     asks = tuple(dict.fromkeys(ask for finding in group for ask in finding.ask))
     return replace(first, also=tuple(finding.subject for finding in others), places=places, ask=asks)
-
-
-def by_network(gates: Iterable[Gate]) -> Mapping[frozenset[tuple[str, str]], list[Gate]]:
-    """Gates grouped by the driver pins they share."""
-    groups: dict[frozenset[tuple[str, str]], list[Gate]] = {}
-    for gate in gates:
-        groups.setdefault(gate.drive or frozenset({(gate.part, "")}), []).append(gate)
-    return groups

@@ -89,11 +89,13 @@ def read_settings(path: str, text: str) -> Settings:
     mistakes: list[InputError] = []
     walker = _Walker(path, text.splitlines(), mistakes)
     try:
-        if any(isinstance(event, yaml.AliasEvent) for event in yaml.parse(text, Loader=yaml.SafeLoader)):
-            mistakes.append(InputError("anchors and aliases are not used here", "write the value out", path, 1, 1))
-            root = None
-        else:
-            root = yaml.compose(text, Loader=yaml.SafeLoader)
+        for event in yaml.parse(text, Loader=yaml.SafeLoader):
+            if isinstance(event, yaml.AliasEvent) or getattr(event, "tag", None) is not None:
+                mark: Any = event.start_mark
+                line, column = mark.line + 1, mark.column + 1
+                message = "anchors, aliases and tags are not used here"
+                mistakes.append(InputError(message, "write the value out", path, line, column, walker.excerpt(line)))
+        root: Any = None if mistakes else yaml.compose(text, Loader=yaml.SafeLoader)
     except yaml.MarkedYAMLError as why:
         mark = why.problem_mark or why.context_mark
         line, column = (mark.line + 1, mark.column + 1) if mark is not None else (1, 1)
@@ -103,7 +105,8 @@ def read_settings(path: str, text: str) -> Settings:
     except (yaml.YAMLError, RecursionError, ValueError) as why:
         mistakes.append(InputError(f"not readable as YAML: {str(why)[:100]}", "correct the file", path, 1, 1))
         root = None
-    said = walker.mapping(root, _TOP) if root is not None else {}
+    empty = root is None or (root.id == "scalar" and not root.value)
+    said = {} if empty else walker.mapping(root, _TOP)
     if mistakes:
         count = "a mistake" if len(mistakes) == 1 else f"{len(mistakes)} mistakes"
         raise SettingsError(f"{path}: {count} in the project file", "", tuple(mistakes))

@@ -17,6 +17,7 @@ from gatecheck.networks.find import Networks, find_networks
 from gatecheck.parse.document import open_document
 from gatecheck.parse.netlist import read_netlist
 from gatecheck.registry import rule_by_id
+from gatecheck.settings import read_settings
 
 if TYPE_CHECKING:
     from gatecheck.design.model import Design
@@ -77,9 +78,10 @@ L1 10u sw out
 """
 
 
-def findings_of(circuit: str, rule: str) -> list[Finding]:
-    """What one rule says of a circuit, grouped as a report has it."""
+def findings_of(circuit: str, rule: str, settings: str = "") -> list[Finding]:
+    """What one rule says of a circuit, with a project file's text, grouped as a report has it."""
     networks = networks_of(circuit)
-    design = rulekit.Design(networks, lambda key: Spot("circuit.net", 1, 1, key))
+    own = read_settings("gatecheck.yaml", settings)
+    design = rulekit.Design(networks, lambda key: Spot("circuit.net", 1, 1, key), own)
     chosen = rule_by_id(rule)
     return rulekit.grouped(design.finding(chosen, say) for say in chosen.check(design))

@@ -10,7 +10,7 @@ import numpy as np
 
 from gatecheck.catalogue.load import pin_is
 from gatecheck.copper.path import Copper, CopperWay, NoWay
-from gatecheck.networks.circuit import is_shunt
+from gatecheck.networks.elements import is_shunt
 
 if TYPE_CHECKING:
     from collections.abc import Iterable, Sequence

@@ -177,8 +177,7 @@ class CopperGraph:
                 _, gap = project(np.array([pad.x_m, pad.y_m]), self._pieces.starts[near], self._pieces.ends[near])
                 for j in near[gap <= reach + self._pieces.half_m[near] + _TOUCH_M].tolist():
                     a, b = to_pad(np.stack([self._pieces.starts[j], self._pieces.ends[j]]), pad)
-                    part = clip_to_box(a, b, half + _TOUCH_M)
-                    part = part or clip_to_box(a, b, half + self._pieces.half_m[j])
+                    part = clip_to_box(a, b, half) or clip_to_box(a, b, half + self._pieces.half_m[j] + _TOUCH_M)
                     links += [
                         (("pad", i, ""), self._station(j, t), float(np.hypot(*(a + t * (b - a))))) for t in part or ()
                     ]

@@ -2,8 +2,8 @@
 
 Over copper of the return net on the next layer, the current comes back right under the trace: such a stretch
 counts its length times the dielectric between. Elsewhere the loop is the polygon between the way there and the
-way back. Without any return copper in the file the area is an interval: from a plane right under the trace to
-a straight wire between the two pins.
+way back. Without any return copper in the file the area is an interval: from nothing, since copper may yet
+be drawn right under the trace, to a straight wire between the two pins.
 """
 
 from __future__ import annotations
@@ -111,11 +111,11 @@ def gate_loop(chains: Chains, network: GateNetwork, edge: str) -> GateLoop | NoW
     covered = ~np.isnan(sampled.next_layer.metres)
     coverage = float(sampled.lengths_m[covered].sum() / max(sampled.lengths_m.sum(), _STEP_M))
     if coverage > 0:
-        nominal = high = _over_return(chains, sampled, sampled.next_layer, ends)
+        low = nominal = high = _over_return(chains, sampled, sampled.next_layer, ends)
     else:
-        nominal, high = _closed(chains, network, drive, sampled, ends)
+        low, nominal, high = _closed(chains, network, drive, sampled, ends)
     least = _over_return(chains, sampled, sampled.any_near, ends)
-    return GateLoop((min(least, nominal), nominal, high), coverage, forward)
+    return GateLoop((min(least, low), nominal, high), coverage, forward)
 
 
 def _nearest(pads: Iterable[Pad], point: Points) -> Points:
@@ -125,19 +125,22 @@ def _nearest(pads: Iterable[Pad], point: Points) -> Points:
     return nearest
 
 
-def _closed(chains: Chains, network: GateNetwork, drive: Drive, sampled: _Sampled, ends: _Ends) -> tuple[float, float]:
-    """Nominal and highest area of a way without return copper on the next layer.
+def _closed(
+    chains: Chains, network: GateNetwork, drive: Drive, sampled: _Sampled, ends: _Ends
+) -> tuple[float, float, float]:
+    """Least, nominal and highest area of a way without return copper on the next layer.
 
-    Closed by the way back over copper; where there is none in the file, by a straight wire at most.
+    Closed by the way back over copper. Where there is none in the file it may yet be drawn right under the
+    trace, so the least is nothing; the highest closes by a straight wire.
     """
     back = chains.back(network, drive)
     if isinstance(back, NoWay):
         source, home = _nearest(ends.source[1], sampled.corners[-1]), _nearest(ends.home[1], sampled.corners[0])
         area = enclosed_area(np.vstack([sampled.corners, source, home]))
-        return area / 2, area
+        return 0.0, area / 2, area
     way = np.array([point[:2] for point in back.points()])
     area = enclosed_area(np.vstack([sampled.corners, way]))
-    return area, area
+    return area, area, area
 
 
 def _sample(chains: Chains, forward: Chain, nets: Iterable[str]) -> _Sampled:

@@ -3,10 +3,12 @@
 from __future__ import annotations
 
 import math
+import re
 from collections import Counter, defaultdict
 from typing import TYPE_CHECKING
 
 from gatecheck.design.model import Pad, Part, Pin, Place, joined
+from gatecheck.parse.fields import unescaped
 
 if TYPE_CHECKING:
     from collections.abc import Iterable, Mapping
@@ -18,6 +20,9 @@ if TYPE_CHECKING:
 _MM = 1e-3
 # Bare or flagged words in a part's attributes that say it is not fitted.
 _NOT_FITTED = "dnp"
+_DIGITS = re.compile(r"([0-9]+)")
+_LONGEST_NAME = 200
+_NUMBERED_FUNCTIONS = 10
 
 
 def from_board(board: BoardFile) -> Design:
@@ -43,18 +48,24 @@ def from_netlist(netlist: NetlistFile) -> Design:
         parts[name] = _part_of_component(name, component, mine, netlist, path)
     for reference, mine in nodes.items():
         # Pins of a part that the file does not list: kept, so that nothing of the net is lost.
-        parts[reference] = _unlisted_part(reference, mine, path)
+        name = reference if reference not in parts else f"{reference}~"
+        parts[name] = _unlisted_part(name, reference, mine, path)
     return joined(path, "netlist", parts)
 
 
 def _identities(references: Iterable[str]) -> list[str]:
     """`R5` where there is one R5, `R5~2` for the second in file order; unnamed parts are `~1`, `~2`."""
-    seen: Counter[str] = Counter()
+    listed = list(references)
+    taken, seen = set(listed), Counter[str]()
     names = []
-    for reference in references:
+    for reference in listed:
         seen[reference] += 1
-        many = seen[reference] > 1 or not reference
-        names.append(f"{reference}~{seen[reference]}" if many else reference)
+        name = reference if seen[reference] == 1 and reference else f"{reference}~{seen[reference]}"
+        while name != reference and name in taken:  # somebody may have called a part `R5~2`
+            seen[reference] += 1
+            name = f"{reference}~{seen[reference]}"
+        taken.add(name)
+        names.append(name)
     return names
 
 
@@ -91,7 +102,7 @@ def _pins_of_pads(name: str, form: FootprintForm) -> tuple[Pin, ...]:
         Pin(
             part=name,
             number=number,
-            function=next((pad.function for pad in pads if pad.function), ""),
+            function=unescaped(next((pad.function for pad in pads if pad.function), "")),
             electrical=next((pad.electrical for pad in pads if pad.electrical), ""),
             net=net,
             pads=tuple(_pad(pad, form, cos, sin) for pad in pads),
@@ -135,7 +146,7 @@ def _part_of_component(
             Pin(
                 part=name,
                 number=node.pin,
-                function=known.name if known is not None and known.name else _plain(node),
+                function=unescaped(known.name if known is not None and known.name else _plain(node, netlist)),
                 electrical=node.electrical or (known.electrical if known is not None else ""),
                 net=net,
             )
@@ -163,10 +174,10 @@ def _part_of_component(
     )
 
 
-def _unlisted_part(reference: str, nodes: list[tuple[str, NetNode]], path: str) -> Part:
-    pins = tuple(Pin(reference, node.pin, _plain(node), node.electrical, net) for net, node in nodes)
+def _unlisted_part(name: str, reference: str, nodes: list[tuple[str, NetNode]], path: str) -> Part:
+    pins = tuple(Pin(name, node.pin, unescaped(node.function), node.electrical, net) for net, node in nodes)
     return Part(
-        id=reference,
+        id=name,
         reference=reference,
         value="",
         footprint="",
@@ -183,10 +194,12 @@ def _unlisted_part(reference: str, nodes: list[tuple[str, NetNode]], path: str) 
     )
 
 
-def _plain(node: NetNode) -> str:
-    """The newest exporters append the pin number to the function: `G_1` on pin 1 is `G`."""
+def _plain(node: NetNode, netlist: NetlistFile) -> str:
+    """Exporters from version 10 on append the pin number to the function: `G_1` on pin 1 is `G`."""
     suffix = f"_{node.pin}"
-    return node.function.removesuffix(suffix) if node.function != suffix else node.function
+    if netlist.release < _NUMBERED_FUNCTIONS or node.function == suffix:
+        return node.function
+    return node.function.removesuffix(suffix)
 
 
 def pins_by_net(design: Design) -> Mapping[str, list[tuple[str, str]]]:
@@ -202,16 +215,6 @@ def _natural_pair(pair: tuple[str, str]) -> tuple[object, ...]:
 
 
 def natural(word: str) -> tuple[tuple[int, int, str], ...]:
-    """A sort key by which R9 comes before R10."""
-    key: list[tuple[int, int, str]] = []
-    digits = ""
-    for c in word + "\0":
-        if c.isascii() and c.isdigit():
-            digits += c
-            continue
-        if digits:
-            key.append((0, int(digits[:18]), digits))
-            digits = ""
-        if c != "\0":
-            key.append((1, 0, c))
-    return tuple(key)
+    """A sort key by which R9 comes before R10; only the start of a very long word counts."""
+    pieces = _DIGITS.split(word[:_LONGEST_NAME])
+    return tuple((0, int(piece[:18]), piece) if piece.isdecimal() else (1, 0, piece) for piece in pieces if piece)

@@ -39,11 +39,6 @@ class Pad:
     layers: tuple[str, ...]
     offset: int
 
-    @property
-    def through(self) -> bool:
-        """Does it reach all copper layers?"""
-        return "*.Cu" in self.layers or self.kind == "thru_hole"
-
 
 @dataclass(frozen=True, slots=True)
 class Pin:
@@ -103,10 +98,6 @@ class Design:
             for what, name in self.graph.nodes
             if what == "net"
         }
-
-    def part_of(self, pin: Pin) -> Part:
-        """The part a pin belongs to."""
-        return self.parts[pin.part]
 
 
 def joined(source: str, kind: str, parts: Mapping[str, Part]) -> Design:

@@ -21,6 +21,8 @@ if TYPE_CHECKING:
     from gatecheck.design.model import Design, Part
 
 _Key = tuple[str, str | None]
+# Our choice: more than any power stage parallels; bounds the report on hostile input.
+_MOST_PARALLEL = 64
 
 
 @dataclass(frozen=True, slots=True)
@@ -37,6 +39,8 @@ def find_networks(design: Design) -> Networks:
     """Find every transistor with a gate, its role, and the gate network of every switching one."""
     circuit = Circuit(design)
     transistors = find_transistors(design, circuit.kinds)
+    middles = {t.drain_net for t in transistors} & {t.source_net for t in transistors}
+    circuit.not_rails({t.gate_net for t in transistors} | middles)
     gate_nets = frozenset(t.gate_net for t in transistors if t.gate_net)
     walks = {t.key: walk(circuit, t, gate_nets) for t in transistors}
     alternates = _alternates(design, transistors)
@@ -91,8 +95,8 @@ def _parallel(
     found: dict[_Key, tuple[_Key, ...]] = {}
     for group in groups.values():
         for one in group:
-            others = (t.key for t in group if t is not one and t.key not in alternates.get(one.key, ()))
-            found[one.key] = tuple(others)
+            others = [t.key for t in group[:_MOST_PARALLEL] if t is not one]
+            found[one.key] = tuple(key for key in others if key not in alternates.get(one.key, ()))
     return found
 
 

@@ -32,7 +32,9 @@ class Sort(StrEnum):
     CHIP = "chip"
     CONNECTOR = "connector"
     TEST_POINT = "test point"
-    NET_TIE = "net tie"
+    NET_TIE = "net tie"  # copper
+    JUMPER = "jumper"  # a link that is closed or open as drawn or plugged
+    ARRAY = "array"  # several resistors in one body
     FUSE = "fuse"
     WINDING = "winding"  # transformers and common-mode chokes
     OTHER = "other"
@@ -54,7 +56,8 @@ _LETTERS: dict[str, Sort] = {
     "DZ": Sort.ZENER, "ZD": Sort.ZENER, "TVS": Sort.ZENER, "VZ": Sort.ZENER, "DTVS": Sort.ZENER,
     "RV": Sort.ZENER, "MOV": Sort.ZENER, "VDR": Sort.ZENER,
     "TP": Sort.TEST_POINT, "TEST": Sort.TEST_POINT, "TPT": Sort.TEST_POINT,
-    "NT": Sort.NET_TIE, "JP": Sort.NET_TIE, "SJ": Sort.NET_TIE,
+    "NT": Sort.NET_TIE, "JP": Sort.JUMPER, "SJ": Sort.JUMPER, "W": Sort.JUMPER,
+    "RN": Sort.ARRAY, "RA": Sort.ARRAY, "RP": Sort.ARRAY, "CR": Sort.DIODE,
     "CN": Sort.CONNECTOR, "CON": Sort.CONNECTOR, "CONN": Sort.CONNECTOR, "TB": Sort.CONNECTOR,
     "J": Sort.CONNECTOR, "P": Sort.CONNECTOR, "X": Sort.CONNECTOR,
     "IC": Sort.CHIP, "U": Sort.CHIP, "OK": Sort.CHIP, "OPTO": Sort.CHIP, "DRV": Sort.CHIP,
@@ -68,10 +71,12 @@ _LETTERS: dict[str, Sort] = {
 _WORDS: tuple[tuple[re.Pattern[str], Sort], ...] = tuple(
     (re.compile(pattern, re.IGNORECASE), sort)
     for pattern, sort in (
-        (r"net.?tie|solder.?jumper", Sort.NET_TIE),
+        (r"net.?tie", Sort.NET_TIE),
+        (r"solder.?jumper|jumper", Sort.JUMPER),
+        (r"r_?array|r_?pack|resistor.?(?:array|network|pack)", Sort.ARRAY),
         (r"test.?(point|pad)|measurement.?point", Sort.TEST_POINT),
         (r"ferrite|bead", Sort.BEAD),
-        (r"common.?mode|cmc|choke.*coupled|transformer|xfmr", Sort.WINDING),
+        (r"common.?mode|cmc|coupled.?(?:choke|inductor)|transformer|xfmr", Sort.WINDING),
         (r"varistor|zener|tvs|transil|suppressor", Sort.ZENER),
         (r"thermistor|ntc|fuse|polyfuse", Sort.FUSE),
         (r"\bleds?\b|led_", Sort.LED),
@@ -85,6 +90,7 @@ _VALUE_KIND = {
     Sort.CAPACITOR: Kind.CAPACITOR,
     Sort.DIODE: Kind.DIODE,
     Sort.ZENER: Kind.DIODE,
+    Sort.ARRAY: Kind.RESISTOR,
 }
 _SORT_OF_VALUE = {
     Kind.BEAD: Sort.BEAD,
@@ -94,6 +100,10 @@ _SORT_OF_VALUE = {
 }
 _TWO_TERMINALS = (Sort.RESISTOR, Sort.BEAD, Sort.INDUCTOR, Sort.CAPACITOR, Sort.FUSE)
 _MANY_PINS = 6
+# Solder jumpers say in their names how they are drawn; one that says nothing is taken as closed.
+_OPEN_JUMPER = re.compile(r"open", re.IGNORECASE)
+# Our choice: words stand at the start of a name; bounds the search on hostile ones.
+_LONGEST = 200
 
 
 def kind_of(part: Part) -> Kinded:
@@ -102,22 +112,29 @@ def kind_of(part: Part) -> Kinded:
     `dnp` in the value counts as not fitted, like the flag.
     """
     sort = _sort(part)
+    if sort is Sort.JUMPER:
+        return Kinded(sort, None, part.fitted and _OPEN_JUMPER.search(_named(part)) is None)
     if sort not in _VALUE_KIND:
         return Kinded(sort, None, part.fitted)
     value = parse_value(part.value, kind=_VALUE_KIND[sort])
     override = _SORT_OF_VALUE.get(value.kind)
-    if override is not None and sort in (Sort.RESISTOR, Sort.BEAD, Sort.INDUCTOR):
+    if sort is Sort.BEAD and "jumper" in value.flags:
+        sort = Sort.RESISTOR  # a link in the bead's place: there is no bead
+    elif override is not None and sort in (Sort.RESISTOR, Sort.BEAD, Sort.INDUCTOR):
         sort = override
     return Kinded(sort, value, part.fitted and value.fitted)
 
 
 def _sort(part: Part) -> Sort:
-    if gated(part.pins) or bipolar(part):
+    letter = _by_letter(part)
+    if letter is not Sort.CONNECTOR and (gated(part.pins) or bipolar(part)):
         return Sort.TRANSISTOR
-    named = f"{part.library.rpartition(':')[2]} {part.footprint}"
+    if part.net_ties:
+        return Sort.NET_TIE
+    named = _named(part)
     by_word = next((sort for pattern, sort in _WORDS if pattern.search(named)), None)
-    by_letter = _by_letter(part)
-    if by_word in (Sort.NET_TIE, Sort.TEST_POINT, Sort.CONNECTOR) or by_letter in (
+    by_letter = letter
+    if by_word in (Sort.NET_TIE, Sort.JUMPER, Sort.ARRAY, Sort.TEST_POINT, Sort.CONNECTOR) or by_letter in (
         None,
         Sort.CHIP,
         Sort.OTHER,
@@ -129,12 +146,20 @@ def _sort(part: Part) -> Sort:
         sort = by_letter
     nets = len(part.nets())
     if sort in _TWO_TERMINALS and nets > 2:  # noqa: PLR2004 (arrays, four-terminal shunts, chokes)
+        if sort is Sort.RESISTOR and nets > 3:  # noqa: PLR2004 (four ends of two resistors at least)
+            return Sort.ARRAY
         return Sort.WINDING if sort in (Sort.INDUCTOR, Sort.BEAD) else Sort.OTHER
     return sort
 
 
+def _named(part: Part) -> str:
+    """Symbol and footprint names, where words tell the sort; old boards tie nets with a tag."""
+    tags = "net tie" if "net tie" in part.keywords.lower() else ""
+    return f"{part.library.rpartition(':')[2]} {part.footprint}"[:_LONGEST] + tags
+
+
 def _by_letter(part: Part) -> Sort | None:
-    letters = re.match(r"[A-Za-z]*", part.reference).group(0).upper()  # type: ignore[union-attr]  # matches empty
+    letters = re.match(r"[A-Za-z]*", part.reference[:_LONGEST]).group(0).upper()  # type: ignore[union-attr]  # matches empty
     if letters in _LETTERS:
         return _LETTERS[letters]
     # `Rdamp1`, `CBOOT2`, `Dz1`: the first letter says it when the part has two ends.
@@ -148,7 +173,7 @@ def _by_pins(part: Part) -> Sort:
 
 
 def _limits_voltage(part: Part) -> bool:
-    said = f"{part.value} {part.description} {part.keywords} {part.library}"
+    said = f"{part.value} {part.description} {part.keywords} {part.library}"[: 5 * _LONGEST]
     return re.search(r"zener|tvs|transil|suppressor|bidirectional", said, re.IGNORECASE) is not None
 
 

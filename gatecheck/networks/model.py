@@ -65,7 +65,8 @@ class EdgePaths:
     `steps` runs from driver to gate, each part once, over the ways that carry most of the current: where a
     diode branch bypasses a resistor, the diode branch. `ways` are all of them, way by way. `covering` are the
     parts that every conducting way passes: a bead among them damps this edge whole. `elements` are the parts
-    and net ties of all conducting ways, between their nets.
+    and net ties of all conducting ways, between their nets. `truncated` says that there were more ways than
+    are searched: nothing covers then.
     """
 
     steps: tuple[Step, ...]
@@ -73,6 +74,7 @@ class EdgePaths:
     ways: tuple[tuple[str, ...], ...]
     covering: frozenset[str]
     conducts: bool
+    truncated: bool = False
 
     @property
     def parts(self) -> tuple[str, ...]:

@@ -25,7 +25,9 @@ SINGLE_PULL = 1  # one transistor, one edge
 NO_DRIVE = 0
 
 _OUTPUT_NAMES = ("high_side", "low_side", "split_on", "split_off", "single")
-_PASSIVE_NAMES = ("input", "clamp", "sense", "supply", "reference")
+_PASSIVE_NAMES = ("input", "supply", "reference")
+# Called outputs by some symbols, yet they only hold or watch the gate.
+_NEVER_DRIVES = ("clamp", "sense")
 _OUTPUT_TYPES = ("output", "tri_state", "power_out")
 _TWO_WAY_TYPES = ("", "bidirectional", "passive", "unspecified", "free", "open_collector", "open_emitter")
 
@@ -38,15 +40,16 @@ class Port:
     rank: float
 
 
-def ports(circuit: Circuit, net: str, own: tuple[str, str | None]) -> list[Port]:
-    """The pins on a net that might drive it, without those of the transistor itself."""
-    found = []
-    for pin in circuit.pins(net):
-        rank = _rank(circuit, pin, own)
-        if rank > NO_DRIVE:
-            found.append(Port(pin, rank))
+def ports(circuit: Circuit, net: str, own: str) -> list[Port]:
+    """The pins on a net that might drive it, without those of the transistor's own part."""
+    known = circuit.ports.get(net)
+    if known is None:
+        # A rail drives no gate, and has thousands of pins.
+        pins = () if circuit.is_rail(net) else circuit.pins(net)
+        known = circuit.ports[net] = [Port(pin, rank) for pin in pins if (rank := _rank(circuit, pin)) > NO_DRIVE]
+    found = [port for port in known if port.pin.part != own or port.rank != SINGLE_PULL]
     pulls = [port for port in found if port.rank == SINGLE_PULL]
-    if len({port.pin.part for port in pulls}) == 2:  # noqa: PLR2004 (one for each edge)
+    if len({(port.pin.part, port.pin.number) for port in pulls}) == 2:  # noqa: PLR2004 (one for each edge)
         found = [port for port in found if port not in pulls] + [Port(port.pin, PUSH_PULL) for port in pulls]
     return found
 
@@ -56,7 +59,7 @@ def best_rank(found: Iterable[Port]) -> float:
     return max((port.rank for port in found), default=NO_DRIVE)
 
 
-def _rank(circuit: Circuit, pin: Pin, own: tuple[str, str | None]) -> float:
+def _rank(circuit: Circuit, pin: Pin) -> float:
     sort = circuit.kinds[pin.part].sort
     if sort is Sort.CHIP:
         return _chip_rank(pin)
@@ -64,7 +67,7 @@ def _rank(circuit: Circuit, pin: Pin, own: tuple[str, str | None]) -> float:
         return CONNECTOR
     if sort is Sort.WINDING:
         return WINDING
-    if sort is Sort.TRANSISTOR and pin.part != own[0]:
+    if sort is Sort.TRANSISTOR:
         return _transistor_rank(circuit, pin)
     return NO_DRIVE
 
@@ -74,6 +77,8 @@ def _chip_rank(pin: Pin) -> float:
     if marked == "no_connect" or kind == "no_connect":
         return NO_DRIVE
     if pin.function:
+        if any(pin_is(group, pin.function) for group in _NEVER_DRIVES):
+            return NO_DRIVE
         if kind != "input" and any(pin_is(group, pin.function) for group in _OUTPUT_NAMES):
             return NAMED_OUTPUT
         if kind not in _OUTPUT_TYPES and any(pin_is(group, pin.function) for group in _PASSIVE_NAMES):

@@ -6,8 +6,8 @@ from typing import TYPE_CHECKING
 
 from gatecheck.catalogue.load import role_limits, word_in
 from gatecheck.networks.evidence import gather
-from gatecheck.networks.evidence.against import is_p_channel
 from gatecheck.networks.model import Evidence, Switch
+from gatecheck.networks.surroundings import is_p_channel
 from gatecheck.values import parse_transistor_text
 
 if TYPE_CHECKING:

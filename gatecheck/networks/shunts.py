@@ -6,7 +6,7 @@ from dataclasses import dataclass
 from typing import TYPE_CHECKING
 
 from gatecheck.catalogue.load import pin_is
-from gatecheck.networks.circuit import is_shunt
+from gatecheck.networks.elements import is_shunt
 from gatecheck.networks.kinds import Sort
 
 if TYPE_CHECKING:

@@ -6,11 +6,13 @@ from dataclasses import dataclass
 from functools import cached_property
 from typing import TYPE_CHECKING
 
+from gatecheck.catalogue.load import word_in
 from gatecheck.networks.ports import CONNECTOR
 
 if TYPE_CHECKING:
     from collections.abc import Callable, Mapping, Sequence
 
+    from gatecheck.design.model import Part
     from gatecheck.networks.circuit import Circuit
     from gatecheck.networks.terminals import Transistor
     from gatecheck.networks.walk import Walk
@@ -45,22 +47,44 @@ class Surroundings:
         return _grouped(self.transistors, lambda transistor: transistor.source_net)
 
     def partners(self, transistor: Transistor) -> list[tuple[Transistor, str]]:
-        """The driven transistors that form a half bridge with this one, and the net in the middle."""
+        """The driven transistors that form a half bridge with this one, and the net in the middle.
+
+        Source on drain, or drain on drain for a P-channel over an N-channel one.
+        """
         known = self._partners.get(transistor.key)
         if known is None:
+            found = [
+                *self._at(transistor.source_net, self.by_drain),
+                *self._at(transistor.drain_net, self.by_source),
+                *(
+                    (other, net)
+                    for other, net in self._at(transistor.drain_net, self.by_drain)
+                    if self.p_channel(other) != self.p_channel(transistor)
+                ),
+            ]
             known = self._partners[transistor.key] = [
-                (other, middle)
-                for middle, others in ((transistor.source_net, self.by_drain), (transistor.drain_net, self.by_source))
-                if middle and not self.circuit.is_rail(middle)
-                for net in sorted(self.circuit.tied(middle))
-                for other in others.get(net, ())
-                if other.key != transistor.key and self.driven(other)
+                (other, net) for other, net in found if other.key != transistor.key and self.driven(other)
             ]
         return known
+
+    def p_channel(self, transistor: Transistor) -> bool:
+        """Does its text say that it is a P-channel device?"""
+        return is_p_channel(self.circuit.design.parts[transistor.part])
+
+    def _at(self, middle: str, others: Mapping[str, list[Transistor]]) -> list[tuple[Transistor, str]]:
+        """The transistors with a terminal on this net or one tied to it, unless it is a rail."""
+        if not middle or self.circuit.is_rail(middle):
+            return []
+        return [(other, middle) for net in sorted(self.circuit.tied(middle)) for other in others.get(net, ())]
 
     @cached_property
     def _partners(self) -> dict[_Key, list[tuple[Transistor, str]]]:
         return {}
+
+
+def is_p_channel(part: Part) -> bool:
+    """Does its text say that it is a P-channel device?"""
+    return bool(word_in("p_channel", f"{part.description} {part.value} {part.library}".replace("_", " ")))
 
 
 def _grouped(transistors: Sequence[Transistor], net_of: Callable[[Transistor], str]) -> Mapping[str, list[Transistor]]:

@@ -31,12 +31,12 @@ _GROUPS = (
     ("collector", _DRAIN),
 )
 # The last word of a generic symbol's name spells the order of pads 1, 2, 3: Q_NMOS_GDS, Q_NIGBT_GCE.
-_SPELLED = re.compile(r"(?:MOS\w*|FET|IGBT|JFET)[_ -]([GDSCE]{3})\b", re.IGNORECASE)
+_SPELLED = re.compile(r"(?:MOS\w{0,8}|FET|IGBT|JFET)[_ -]([GDSCE]{3})\b", re.IGNORECASE)
 
 
 @dataclass(frozen=True, slots=True)
 class Transistor:
-    """One die with a gate: its pins by terminal. `told_by` says how the terminals are known."""
+    """One die with a gate: its pins by terminal."""
 
     part: str
     unit: str | None
@@ -44,7 +44,6 @@ class Transistor:
     source: tuple[Pin, ...]
     drain: tuple[Pin, ...]
     kelvin: tuple[Pin, ...]
-    told_by: str  # "pins", "symbol", "package"
     package: Package | None
 
     @property
@@ -78,11 +77,11 @@ def _net(pins: tuple[Pin, ...]) -> str:
 
 
 def find_transistors(design: Design, kinds: Mapping[str, Kinded]) -> list[Transistor]:
-    """All transistors with a gate, in natural order of their references."""
+    """All fitted transistors with a gate, in natural order of their references."""
     found: list[Transistor] = []
     for key in sorted(design.parts, key=natural):
         part = design.parts[key]
-        if kinds[key].sort is Sort.TRANSISTOR and not bipolar(part):
+        if kinds[key].sort is Sort.TRANSISTOR and kinds[key].fitted and not bipolar(part):
             found += _transistors_of(part)
     return found
 
@@ -91,17 +90,17 @@ def _transistors_of(part: Part) -> list[Transistor]:
     package = package_of(part.footprint, len({pin.number for pin in part.pins}))
     if gated(part.pins):
         named = [(pin, _terminal(terminal_name(pin))) for pin in part.pins]
-        return [_die(part, unit, pins, "pins", package) for unit, pins in _dies(part, named)]
-    spelled = _SPELLED.search(part.value) or _SPELLED.search(part.library)
+        return [_die(part, unit, pins, package) for unit, pins in _dies(part, named)]
+    spelled = _SPELLED.search(part.value[:80]) or _SPELLED.search(part.library[:80])
     if spelled is not None:
         letters = spelled.group(1).upper().replace("C", _DRAIN).replace("E", _SOURCE)
-        table, told_by = dict(zip("123", letters, strict=True)), "symbol"
+        table = dict(zip("123", letters, strict=True))
     elif package is not None and package.pads and not any(pin.function for pin in part.pins):
-        table, told_by = dict(package.pads), "package"
+        table = dict(package.pads)
     else:
         return []
     pins = [(pin, table.get(pin.number, "")) for pin in part.pins]
-    die = _die(part, None, pins, told_by, package)
+    die = _die(part, None, pins, package)
     return [die] if die.gate_net and die.source_net and die.drain_net else []
 
 
@@ -118,10 +117,11 @@ def _dies(part: Part, named: list[tuple[Pin, str]]) -> list[tuple[str | None, li
 
     By the file's own units where it has them, else by the numbers in pin names (G1, S1), else by order.
     """
-    gates = [pin for pin, terminal in named if terminal == _GATE]
+    gates = [pin for pin, terminal in named if terminal == _GATE and pin.net and not pin.net.startswith("unconnected-")]
     if len({pin.net for pin in gates}) < 2 or len({pin.number for pin in gates}) < 2:  # noqa: PLR2004 (two gates)
         return [(None, named)]
-    units = [(name, [entry for entry in named if entry[0].number in pins]) for name, pins in part.units]
+    members = {name: frozenset(pins) for name, pins in part.units}
+    units = [(name, [entry for entry in named if entry[0].number in pins]) for name, pins in members.items()]
     units = [(name, pins) for name, pins in units if any(terminal == _GATE for _, terminal in pins)]
     if len(units) == len(gates):
         return list(units)
@@ -138,7 +138,12 @@ def _by_number(named: list[tuple[Pin, str]]) -> list[tuple[str | None, list[tupl
             if match:
                 dies[match.group(1)].append((pin, _terminal(piece)))
     dies = {key: pins for key, pins in dies.items() if any(terminal == _GATE for _, terminal in pins)}
-    return [(chr(ord("A") + i), dies[key]) for i, key in enumerate(sorted(dies))]
+    return [(_unit_name(i), dies[key]) for i, key in enumerate(sorted(dies))]
+
+
+def _unit_name(i: int) -> str:
+    """A, B, ... Z, then numbers."""
+    return chr(ord("A") + i) if i < 26 else str(i + 1)  # noqa: PLR2004 (letters)
 
 
 def _by_order(named: list[tuple[Pin, str]]) -> list[tuple[str | None, list[tuple[Pin, str]]]]:
@@ -155,7 +160,7 @@ def _by_order(named: list[tuple[Pin, str]]) -> list[tuple[str | None, list[tuple
         mine = [(groups[_GATE][i], _GATE)]
         mine += [(pin, _SOURCE) for pin in _share(groups[_SOURCE], i, count)]
         mine += [(pin, _DRAIN) for pin in _share(groups[_DRAIN][::-1], i, count)]
-        dies.append((chr(ord("A") + i), mine))
+        dies.append((_unit_name(i), mine))
     return dies
 
 
@@ -165,9 +170,7 @@ def _share(pins: list[Pin], i: int, count: int) -> list[Pin]:
     return pins[i * size : (i + 1) * size] if size else pins
 
 
-def _die(
-    part: Part, unit: str | None, pins: Iterable[tuple[Pin, str]], told_by: str, package: Package | None
-) -> Transistor:
+def _die(part: Part, unit: str | None, pins: Iterable[tuple[Pin, str]], package: Package | None) -> Transistor:
     by_terminal: dict[str, list[Pin]] = defaultdict(list)
     for pin, terminal in pins:
         by_terminal[terminal].append(pin)
@@ -183,6 +186,5 @@ def _die(
         source=tuple(sources),
         drain=tuple(by_terminal[_DRAIN]),
         kelvin=tuple(kelvin),
-        told_by=told_by,
         package=package,
     )

@@ -11,38 +11,28 @@
 from __future__ import annotations
 
 from collections import deque
-from dataclasses import dataclass, field
+from dataclasses import dataclass, field, replace
 from typing import TYPE_CHECKING, NamedTuple
 
-from gatecheck.catalogue.load import pin_is
+from gatecheck.networks.choose import choose, drives, local_turn_off
 from gatecheck.networks.kinds import Sort
 from gatecheck.networks.model import OFF, ON, Drive, EdgePaths, Step
-from gatecheck.networks.ports import (
-    CHIP_PIN,
-    CONNECTOR,
-    NO_DRIVE,
-    OUTPUT,
-    PUSH_PULL,
-    SINGLE_PULL,
-    Port,
-    best_rank,
-    ports,
-)
+from gatecheck.networks.ports import OUTPUT, SINGLE_PULL, Port, best_rank, ports
 
 if TYPE_CHECKING:
     from collections.abc import Iterable
 
-    from gatecheck.design.model import Pin
-    from gatecheck.networks.circuit import Circuit, Element
+    from gatecheck.networks.circuit import Circuit
+    from gatecheck.networks.elements import Element
     from gatecheck.networks.terminals import Transistor
 
-_SERIES = (Sort.RESISTOR, Sort.BEAD, Sort.INDUCTOR, Sort.DIODE, Sort.NET_TIE, Sort.FUSE)
+_SERIES = (Sort.RESISTOR, Sort.BEAD, Sort.INDUCTOR, Sort.DIODE, Sort.NET_TIE, Sort.JUMPER, Sort.FUSE)
 # A gate resistor of a switch; common practice ends at some hundred ohm.
 _SERIES_OHM = 1000.0
 # Second try, for gates that are only fed slowly. Our choice.
 _FEED_OHM = 10e6
 # Our choice: longer chains or more ways than any gate drive has; bounds the search on hostile input.
-_MAX_NETS, _MAX_HOPS, _MAX_WAYS = 60, 10, 200
+_MAX_NETS, _MAX_HOPS, _MAX_WAYS = 100, 16, 400
 
 
 class _Hop(NamedTuple):
@@ -76,150 +66,104 @@ class Walk:
 
 @dataclass(slots=True)
 class _Reached:
-    """Nets in reach of the gate and the ports on them."""
+    """Nets in reach of the gate: parts between, and the ports on each. `leaves` are not passed through."""
 
-    nets: dict[str, list[Port]] = field(default_factory=dict)
-    leaves: set[str] = field(default_factory=set)  # nets not passed through
+    nets: dict[str, tuple[int, list[Port]]] = field(default_factory=dict)
+    leaves: set[str] = field(default_factory=set)
+    truncated: bool = False
 
 
 def walk(circuit: Circuit, transistor: Transistor, gate_nets: frozenset[str]) -> Walk:
     """Find what drives a transistor's gate. `gate_nets` are the gate nets of all transistors."""
-    barred = frozenset(
-        {transistor.drain_net, transistor.kelvin_net, transistor.source_net}
-        | circuit.tied(transistor.source_net)
-        | circuit.tied(transistor.kelvin_net)
-    ) - {transistor.gate_net, ""}
-    for limit_ohm in (_SERIES_OHM, _FEED_OHM):
-        reached = _reach(circuit, transistor, gate_nets, barred, limit_ohm)
-        chosen = _choose(circuit, transistor, reached)
-        if chosen:
+    home = circuit.tied(transistor.source_net) | circuit.tied(transistor.kelvin_net)
+    barred = (home | {transistor.drain_net, transistor.kelvin_net, transistor.source_net}) - {transistor.gate_net, ""}
+    # Fitted parts first: an unfitted way is looked at only where no fitted one leads to a driver.
+    tries = [(ohm, fitted) for ohm in (_SERIES_OHM, _FEED_OHM) for fitted in (True, False)]
+    for limit_ohm, only_fitted in tries:
+        reached = _reach(circuit, transistor, gate_nets, barred, _Passing(limit_ohm, only_fitted))
+        chosen = choose(circuit, transistor, reached.nets)
+        if best_rank(chosen) > SINGLE_PULL or (chosen and limit_ohm == _FEED_OHM):
             break
-    drives = _drives(circuit, chosen)
-    ways = {drive.net: _ways(circuit, transistor.gate_net, drive.net, reached, limit_ohm) for drive in drives}
-    on, off = (_edge(edge, drives, ways) for edge in (ON, OFF))
-    nets = {transistor.gate_net} | {drive.net for drive in drives}
+    found = drives(circuit, chosen, home)
+    passing = _Passing(limit_ohm, only_fitted=False)
+    everything = _reach(circuit, transistor, gate_nets, barred, passing)
+    ways = {drive.net: _ways(circuit, transistor.gate_net, drive.net, everything, passing) for drive in found}
+    on, off = (_edge(edge, found, ways) for edge in (ON, OFF))
+    if found and not off.conducts:
+        helpers = local_turn_off(circuit, sorted(everything.nets), home)
+        if helpers:
+            found = (*(replace(drive, edge=ON) for drive in found), *drives(circuit, helpers, home))
+            ways |= {h.pin.net: _ways(circuit, transistor.gate_net, h.pin.net, everything, passing) for h in helpers}
+            off = _edge(OFF, found, ways)
+    if everything.truncated:
+        on, off = (replace(edge, covering=frozenset(), truncated=True) for edge in (on, off))
+    unfitted = {hop.element.part for way in ways.values() for hops in way for hop in hops if not hop.element.fitted}
+    open_parts = sorted(unfitted & {part for edge in (on, off) if not edge.conducts for part in edge.parts})
+    nets = {transistor.gate_net} | {drive.net for drive in found}
     nets |= {net for edge in (on, off) for step in edge.steps for net in (step.near, step.far)}
-    unfitted = {hop.element.part for found in ways.values() for way in found for hop in way if not hop.element.fitted}
-    blocked = [edge for edge in (on, off) if not edge.conducts]
-    open_parts = sorted(unfitted & {part for edge in blocked for part in edge.parts})
-    return Walk(
-        drives,
-        best_rank(chosen),
-        on,
-        off,
-        frozenset(nets),
-        tuple(open_parts),
-        limit_ohm == _FEED_OHM and bool(drives),
-    )
+    feed_only = limit_ohm == _FEED_OHM and bool(found)
+    return Walk(found, best_rank(chosen), on, off, frozenset(nets), tuple(open_parts), feed_only)
+
+
+class _Passing(NamedTuple):
+    """Which parts the walk goes through."""
+
+    limit_ohm: float
+    only_fitted: bool
+
+    def lets(self, element: Element) -> bool:
+        """A series part, small enough, and fitted if only those count."""
+        small = element.ohm is None or element.ohm <= self.limit_ohm
+        return element.sort in _SERIES and small and (element.fitted or not self.only_fitted)
 
 
 def _reach(
-    circuit: Circuit,
-    transistor: Transistor,
-    gate_nets: frozenset[str],
-    barred: frozenset[str],
-    limit_ohm: float,
+    circuit: Circuit, transistor: Transistor, gate_nets: frozenset[str], barred: frozenset[str], passing: _Passing
 ) -> _Reached:
     start = transistor.gate_net
-    reached, edge = _Reached(), [start]
-    reached.nets[start] = ports(circuit, start, transistor.key)
-    while edge and len(reached.nets) < _MAX_NETS:
-        here = edge.pop(0)
+    reached, edge = _Reached(), deque([start])
+    reached.nets[start] = (0, ports(circuit, start, transistor.part))
+    if circuit.is_rail(start):
+        return reached
+    while edge:
+        here = edge.popleft()
         for element in circuit.elements(here):
             net = element.other(here)
-            if net in reached.nets or net in barred or not _passes(element, limit_ohm) or circuit.is_rail(net):
+            if net in reached.nets or net in barred or not passing.lets(element) or circuit.is_rail(net):
                 continue
-            reached.nets[net] = ports(circuit, net, transistor.key)
-            if net in gate_nets or best_rank(reached.nets[net]) >= CHIP_PIN:
+            if len(reached.nets) >= _MAX_NETS:
+                reached.truncated = True
+                return reached
+            reached.nets[net] = (reached.nets[here][0] + 1, ports(circuit, net, transistor.part))
+            if net in gate_nets or best_rank(reached.nets[net][1]) >= OUTPUT:
                 reached.leaves.add(net)
             else:
                 edge.append(net)
     return reached
 
 
-def _passes(element: Element, limit_ohm: float) -> bool:
-    return element.sort in _SERIES and (element.ohm is None or element.ohm <= limit_ohm)
+def _ways(circuit: Circuit, gate: str, driver: str, reached: _Reached, passing: _Passing) -> list[_Way]:
+    """All simple ways from the gate to a driver's net, within what was reached.
 
-
-def _choose(circuit: Circuit, transistor: Transistor, reached: _Reached) -> list[Port]:
-    """The ports that drive: all of the best rank, and both halves of a split output."""
-    found = [(net, port) for net, here in reached.nets.items() for port in here]
-    top = best_rank(port for _, port in found)
-    if top == NO_DRIVE:
-        return []
-    best = [(net, port) for net, port in found if port.rank == top]
-    if top == CHIP_PIN:
-        # Nothing names the pins. One that also touches the source is the likely driver, and of one chip the
-        # pin behind the resistor rather than the one straight on the gate, which will be a clamp or a sense.
-        near = circuit.tied(transistor.source_net) | circuit.tied(transistor.kelvin_net)
-        holding = [
-            (net, port)
-            for net, port in best
-            if any(pin.net in near and not circuit.is_rail(pin.net) for pin in circuit.design.parts[port.pin.part].pins)
-        ]
-        best = holding or best
-    if top <= CHIP_PIN:
-        behind = [(net, port) for net, port in best if net != transistor.gate_net]
-        best = behind or best
-    if top == CONNECTOR and len({port.pin.part for _, port in best}) > 1:
-        best = _largest(circuit, best)
-    return [port for _, port in best]
-
-
-def _largest(circuit: Circuit, best: list[tuple[str, Port]]) -> list[tuple[str, Port]]:
-    """Of several connectors the one with most pins: test headers have one."""
-    most = max(len(circuit.design.parts[port.pin.part].pins) for _, port in best)
-    return [(net, port) for net, port in best if len(circuit.design.parts[port.pin.part].pins) == most]
-
-
-def _drives(circuit: Circuit, chosen: list[Port]) -> tuple[Drive, ...]:
-    """Ports of one part on one net are one drive."""
-    grouped: dict[tuple[str, str], list[Port]] = {}
-    for port in chosen:
-        grouped.setdefault((port.pin.part, port.pin.net), []).append(port)
-    split = len(grouped) > 1
-    return tuple(
-        Drive(part, tuple(port.pin for port in here), _edge_of(circuit, here[0], split))
-        for (part, _), here in grouped.items()
-    )
-
-
-def _edge_of(circuit: Circuit, port: Port, split: bool) -> str:
-    pin = port.pin
-    if port.rank in (PUSH_PULL, SINGLE_PULL):
-        return _pull_of(circuit, pin)
-    if not split or port.rank < OUTPUT:
-        return "both"
-    if pin_is("split_on", pin.function):
-        return ON
-    return OFF if pin_is("split_off", pin.function) else "both"
-
-
-def _pull_of(circuit: Circuit, pin: Pin) -> str:
-    """A transistor pulls up if its other main terminal is at a supply, down if at a ground or the source."""
-    others = [p.net for p in circuit.design.parts[pin.part].pins if p.net and p.net != pin.net]
-    low = any("GND" in net.upper() or net.upper().endswith(("VSS", "VEE", "COM")) for net in others)
-    high = any(circuit.is_rail(net) and "GND" not in net.upper() for net in others)
-    return OFF if low or not high else ON
-
-
-def _ways(circuit: Circuit, gate: str, driver: str, reached: _Reached, limit_ohm: float) -> list[_Way]:
-    """All simple ways from the gate to a driver's net, within what was reached."""
+    Marks `reached` as truncated where a bound cuts the search off.
+    """
     if gate == driver:
         return [()]
     found: list[_Way] = []
     # Shortest first, so that a bound that is hit cuts off the long ones.
     open_ways: deque[tuple[str, _Way, frozenset[str]]] = deque([(gate, (), frozenset({gate}))])
-    while open_ways and len(found) < _MAX_WAYS:
+    while open_ways:
         here, way, seen = open_ways.popleft()
         for element in circuit.elements(here):
             net = element.other(here)
-            if net in seen or net not in reached.nets or not _passes(element, limit_ohm):
+            if net in seen or net not in reached.nets or not passing.lets(element):
                 continue
             hop = _Hop(element, here, net)
-            if net == driver:
+            if len(found) >= _MAX_WAYS or len(open_ways) >= _MAX_WAYS or len(way) >= _MAX_HOPS:
+                reached.truncated = True
+            elif net == driver:
                 found.append((*way, hop))
-            elif net not in reached.leaves and len(way) < _MAX_HOPS and len(open_ways) < _MAX_WAYS:
+            elif net not in reached.leaves:
                 open_ways.append((net, (*way, hop), seen | {net}))
     return found
 

@@ -7,6 +7,7 @@ are left where they are. Lengths are millimetres and angles degrees, as in the f
 from __future__ import annotations
 
 from dataclasses import dataclass, field, replace
+from itertools import chain
 from typing import TYPE_CHECKING, Any
 
 from gatecheck.parse.document import Document, Malformed, Span
@@ -105,8 +106,8 @@ def read_board(document: Document) -> BoardFile:
     troubles: list[InputError] = []
     version, layers, nets, footprints, stack = 0, _Layers(), {}, [], StackForm()
     # The order of sections is not promised, and parts need all the others.
-    named = document.named("version", "general", "layers", "setup", "net")
-    for head, span in (*named, *document.named("footprint", "module")):
+    order = (("version",), ("layers", "net"), ("general", "setup"), ("footprint", "module"))
+    for head, span in chain.from_iterable(document.named(*heads) for heads in order):
         try:
             if head == "version":
                 version = whole(document.read(span))
@@ -122,7 +123,7 @@ def read_board(document: Document) -> BoardFile:
             else:
                 footprints.append(_Footprint(document, version, layers, nets).read(span))
         except Malformed as bad:
-            troubles.append(document.error(span.start + bad.offset, bad.message, _RESAVE))
+            troubles.append(document.trouble(span, bad, _RESAVE))
     if not footprints and not troubles:
         raise document.error(document.root.start, "an empty board: there is no footprint in it", "name another file")
     return BoardFile(document, version, layers.canonical, nets, stack, tuple(footprints), tuple(troubles))
@@ -142,10 +143,10 @@ def _layers(node: Node, version: int) -> _Layers:
     found = {}
     for row in node.forms():
         code, name = row.head, text(row, 1)
-        if name.endswith(".Cu"):
-            found[name] = name
-        elif version < _CANONICAL_LAYERS and code.isdecimal() and int(code) <= _LAST_COPPER:
+        if version < _CANONICAL_LAYERS and code.isdecimal() and len(code) < 3 and int(code) <= _LAST_COPPER:  # noqa: PLR2004
             found[name] = {0: "F.Cu", _LAST_COPPER: "B.Cu"}.get(int(code), f"In{int(code)}.Cu")
+        elif name.endswith(".Cu"):
+            found[name] = name
     return _Layers(found)
 
 

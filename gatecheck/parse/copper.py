@@ -93,7 +93,7 @@ def read_copper(board: BoardFile, nets: frozenset[str]) -> CopperForms:
         try:
             reader(_Copper(board, found[net]), span)
         except Malformed as bad:
-            troubles.append(board.document.error(span.start + bad.offset, bad.message, _RESAVE))
+            troubles.append(board.document.trouble(span, bad, _RESAVE))
     return CopperForms(found, tuple(troubles))
 
 

@@ -169,7 +169,14 @@ class Document:
 
     def error(self, offset: int, message: str, next_step: str) -> InputError:
         """An error that points at an offset of this file."""
-        return error_at(self.path, self.data, offset, message, next_step)
+        line, column = self.place(offset)
+        return InputError(message, next_step, self.path, line, column, _excerpt(self.data, offset))
+
+    def trouble(self, span: Span, bad: Malformed, next_step: str) -> InputError:
+        """An error that points into a form. The parser counts characters, the file bytes."""
+        before = self._text(self.data[span.start : span.start + 4 * bad.offset])[: bad.offset]
+        width = len(before.encode("latin-1" if self.notes else "utf-8", errors="replace"))
+        return self.error(span.start + width, bad.message, next_step)
 
 
 def open_document(path: str, data: bytes) -> Document:
@@ -207,9 +214,12 @@ def _column(data: bytes, begin: int, offset: int) -> int:
 
 
 def error_at(path: str, data: bytes, offset: int, message: str, next_step: str) -> InputError:
-    """An error with the place and the text found there."""
+    """An error with the place and the text found there, in a file that has no index."""
     line, column = place_in(data, offset)
+    return InputError(message, next_step, path, line, column, _excerpt(data, offset))
+
+
+def _excerpt(data: bytes, offset: int) -> str:
     end = data.find(b"\n", offset, offset + 4 * _EXCERPT)
     raw = data[offset : end if end >= 0 else offset + 4 * _EXCERPT]
-    excerpt = raw.decode("utf-8", errors="replace").strip()[:_EXCERPT]
-    return InputError(message, next_step, path, line, column, excerpt)
+    return raw.decode("utf-8", errors="replace").strip()[:_EXCERPT]

@@ -9,7 +9,6 @@ import re
 from typing import TYPE_CHECKING
 
 from gatecheck.parse.document import Malformed
-from gatecheck.parse.sexpr import Text
 
 if TYPE_CHECKING:
     from gatecheck.parse.sexpr import Node
@@ -55,20 +54,13 @@ def numbers(node: Node, count: int, *, at_least: int | None = None) -> tuple[flo
     return tuple(number(node, i) if i <= max(given, needed) else 0.0 for i in range(1, count + 1))
 
 
-def flag(node: Node | None, *, bare: bool = False) -> bool:
-    """One of four spellings of a boolean: bare word, `(locked)`, `(locked yes|no)`, `(locked true|false)`.
+def flag(node: Node) -> bool:
+    """A boolean form in one of its spellings: `(locked)`, `(locked yes|no)`, `(locked true|false)`.
 
-    `bare` says that the bare word was found in the enclosing form.
+    The bare word `locked` is no form; who reads the enclosing one looks for it among its atoms.
     """
-    if node is None:
-        return bare
     words = node.atoms()
     return not words or words[0] in ("yes", "true")
-
-
-def quoted(node: Node) -> list[str]:
-    """The quoted atoms of a form."""
-    return [item for item in node if isinstance(item, Text)]
 
 
 def unescaped(name: str) -> str:

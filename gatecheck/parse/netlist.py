@@ -5,6 +5,7 @@ Types of pins are written differently in the two; both come out in the words of 
 
 from __future__ import annotations
 
+import re
 from dataclasses import dataclass, field
 from typing import TYPE_CHECKING
 
@@ -18,6 +19,8 @@ if TYPE_CHECKING:
     from gatecheck.parse.sexpr import Node
 
 _REEXPORT = "export the netlist again"
+_RELEASE = re.compile(r"(\d{1,3})\.\d")
+_NEWEST = 999
 
 _OLD_PIN_TYPES = {
     "BiDi": "bidirectional",
@@ -71,6 +74,7 @@ class NetlistFile:
     """A netlist; `troubles` are the forms that could not be read, each with its place."""
 
     document: Document
+    release: int  # of the program that exported it; newest where the file does not say
     components: tuple[Component, ...]
     library_pins: Mapping[tuple[str, str], tuple[LibraryPin, ...]]
     nets: Mapping[str, tuple[NetNode, ...]]
@@ -97,11 +101,21 @@ def read_netlist(document: Document) -> NetlistFile:
             try:
                 _read_entry(document, span, found)
             except Malformed as bad:
-                troubles.append(document.error(span.start + bad.offset, bad.message, _REEXPORT))
+                troubles.append(document.trouble(span, bad, _REEXPORT))
     if not found.components and not troubles:
         raise document.error(document.root.start, "an empty netlist: there is no part in it", _REEXPORT)
     nets = {name: tuple(nodes) for name, nodes in found.nets.items()}
-    return NetlistFile(document, tuple(found.components), found.library_pins, nets, tuple(troubles))
+    return NetlistFile(document, _release(document), tuple(found.components), found.library_pins, nets, tuple(troubles))
+
+
+def _release(document: Document) -> int:
+    """`(tool "Eeschema 9.0.2")` is 9."""
+    for _, span in document.named("design"):
+        for child in document.children(span):
+            if document.head_of(child.start) == "tool":
+                found = _RELEASE.search((document.read(child).atoms() or [""])[0][:100])
+                return int(found.group(1)) if found else _NEWEST
+    return _NEWEST
 
 
 def _read_entry(document: Document, span: Span, found: _Gathered) -> None:

@@ -11,6 +11,7 @@ from gatecheck.files import shown_path
 
 _BOARD, _NETLIST, _SHEET, _PROJECT = ".kicad_pcb", ".net", ".kicad_sch", ".kicad_pro"
 _READ = (_BOARD, _NETLIST)
+_ORDER = {_BOARD: 0, _NETLIST: 1, _PROJECT: 2, _SHEET: 3}
 # Copies that editors and panel tools leave beside the design. Read when named, passed over in a folder.
 _COPY_PREFIXES = ("_autosave-", "~", "#auto_saved_files#")
 _COPY_FOLDERS = ("-backups",)
@@ -21,62 +22,65 @@ _MAX_ENTRIES = 200_000
 
 @dataclass(frozen=True, slots=True)
 class Project:
-    """One design to review: the file to read, and those beside it that were passed over, with the reason."""
+    """One design to review: the file to read, and those beside it that were passed over, with the reason.
+
+    `named` says that the user named this very file, and not a folder it lies in.
+    """
 
     path: Path
+    named: bool = True
     passed_over: tuple[tuple[Path, str], ...] = ()
 
 
 def find_projects(paths: list[Path]) -> list[Project]:
     """The designs behind files and folders, in the order given, each once.
 
-    Files of one folder and stem are one design; its board is read, or its netlist where there is no board.
+    Files of one folder and stem are one design; its board is read, or its netlist where there is no board. A
+    file of a kind that designs do not have stands by itself, so that reading it says what is wrong with it.
 
     Raises:
-        InputError: if a path does not exist, or a folder has no design in it.
+        InputError: if a folder has no design in it.
     """
-    chosen: dict[Path, list[Path]] = {}
+    chosen: dict[object, list[tuple[Path, bool]]] = {}
     for path in paths:
-        for file in _files(path):
-            chosen.setdefault(_stem(file), []).append(file)
-    projects = []
-    for stem, files in chosen.items():
-        unique = list(dict.fromkeys(files))
-        boards = [file for file in unique if file.suffix.lower() == _BOARD]
-        main = boards[0] if boards else unique[0]
-        if main.suffix.lower() in (_SHEET, _PROJECT):
-            board = stem.with_name(stem.name + _BOARD)
-            main = board if board.is_file() else main
-        others = [
-            (file, "the board beside it is reviewed")
-            for file in unique
-            if file != main and file.suffix.lower() == _NETLIST
-        ]
-        projects.append(Project(main, tuple(others)))
-    return projects
+        # Not Path.is_dir: it raises for names that the system cannot hold, and opening says that better.
+        folder = os.path.isdir(path)  # noqa: PTH112 (see above)
+        for file in _designs_below(path) if folder else [path]:
+            chosen.setdefault(_design_of(file), []).append((file, not folder))
+    return [_project(files) for files in chosen.values()]
 
 
-def _stem(path: Path) -> Path:
-    """What files of one design share: folder and name without the ending."""
-    return path.with_name(path.name[: -len(path.suffix)] if path.suffix else path.name)
+def _design_of(file: Path) -> object:
+    """What files of one design share: folder and stem, however the folder was spelled."""
+    known = file.suffix.lower() in (_BOARD, _NETLIST, _SHEET, _PROJECT) and os.path.exists(file)  # noqa: PTH110
+    whole = os.path.realpath(file.parent)
+    return (whole, file.stem) if known else (whole, file.name, "")
 
 
-def _files(path: Path) -> list[Path]:
-    # Not Path.is_dir: it raises for names that the system cannot hold, and opening says that better.
-    if not os.path.isdir(path):  # noqa: PTH112 (see above)
-        return [path]
-    found = _designs_below(path)
-    if not found:
-        raise InputError(
-            "there is no board and no netlist in this folder",
-            "name a folder with a .kicad_pcb or an exported .net file",
-            shown_path(path),
-        )
-    return found
+def _project(files: list[tuple[Path, bool]]) -> Project:
+    """One design from its files: the board first, then a netlist; a sheet or project leads to the one beside it."""
+    unique = dict(files)
+    ordered = sorted(unique, key=lambda file: _ORDER.get(file.suffix.lower(), len(_ORDER)))
+    main = ordered[0]
+    if main.suffix.lower() in (_SHEET, _PROJECT):
+        beside = (main.with_suffix(suffix) for suffix in _READ)
+        main = next((file for file in beside if file.is_file()), main)
+    reasons = {_NETLIST: "the board beside it is reviewed", _SHEET: "sheets are not read yet; its board is reviewed"}
+    others = [
+        (file, reasons[file.suffix.lower()]) for file in ordered if file != main and file.suffix.lower() in reasons
+    ]
+    legacy = main.with_suffix(".sch")
+    if os.path.isfile(legacy):  # noqa: PTH113 (is_file raises for names the system cannot hold)
+        others.append((legacy, "a legacy text schematic; the file beside it is reviewed"))
+    return Project(main, any(unique.values()), tuple(others))
 
 
 def _designs_below(folder: Path) -> list[Path]:
-    """Design files below a folder, boards before netlists; hidden folders, links, copies are passed over."""
+    """Design files below a folder; hidden folders, links and copies are passed over.
+
+    Raises:
+        InputError: if there is none, or the folder is too large to search.
+    """
     found: list[Path] = []
     seen = 0
     for here, folders, names in os.walk(folder):
@@ -88,7 +92,14 @@ def _designs_below(folder: Path) -> list[Path]:
                 "name the design's own folder",
                 shown_path(folder),
             )
-        found += [Path(here, name) for name in sorted(names) if _is_design(name)]
+        files = (Path(here, name) for name in sorted(names) if _is_design(name))
+        found += [file for file in files if file.is_file() and not file.is_symlink()]
+    if not found:
+        raise InputError(
+            "there is no board and no netlist in this folder",
+            "name a folder with a .kicad_pcb or an exported .net file",
+            shown_path(folder),
+        )
     return found
 
 

@@ -40,6 +40,7 @@ _OTHER_HEADS = {
     "module": ("this is a single footprint", "give the board it is used on"),
     "kicad_wks": ("this is a drawing frame", "give the board or an exported netlist"),
 }
+_LOOK = 1 << 20
 _NAME_A_DESIGN = "give a board (.kicad_pcb) or an exported netlist (.net)"
 
 
@@ -49,7 +50,8 @@ def sniff(path: str, data: bytes) -> FileKind:
     Raises:
         InputError: if it is none that can be read; says what it looks like and what to give instead.
     """
-    start = data[:400].removeprefix(b"\xef\xbb\xbf").lstrip()
+    # Blank lines may stand before a form; a file of nothing else is empty.
+    start = data[:_LOOK].removeprefix(b"\xef\xbb\xbf").lstrip()[:400]
     if not start:
         raise InputError("this file is empty", _NAME_A_DESIGN, path)
     if data[:2] in (b"\xff\xfe", b"\xfe\xff") or b"\x00" in data[:400]:

@@ -10,54 +10,60 @@ from __future__ import annotations
 
 from typing import TYPE_CHECKING
 
-from gatecheck.rulekit import EDGES, Ask, Design, Gate, Level, Origin, Rule, Say, Verdict, by_network
+from gatecheck.rulekit import EDGES, Ask, Design, Gate, Level, Origin, Rule, Say, Verdict
 
 if TYPE_CHECKING:
     from collections.abc import Iterator
+
+    from gatecheck.rulekit import EdgePaths
+
+_FITTED = "a bead in its own branch, on both edges"
+_NONE = "no bead in series; whether one is needed depends on the gate's capacitance and loop"
+_SHARED = "its bead is shared with other gates or bypassed; whether it needs its own depends on capacitance and loop"
 
 
 def _check(design: Design) -> Iterator[Say]:
     policy = design.settings.bead_policy
     with_bead = {gate.kin for gate in design.gates if _covered(gate) == list(EDGES)}
-    for network in by_network(design.gates).values():
-        for gate in network:
-            covered = _covered(gate)
-            if policy == "never":
-                yield _banned(gate) if gate.beads else Say(gate, Verdict.PASS, "no bead, as the project asks")
-            elif covered == list(EDGES):
-                yield _fitted(gate)
-            elif gate.beads and covered:
-                yield _one_edge(gate, next(edge for edge in EDGES if edge not in covered))
-            elif policy == "always":
-                yield _lacking(gate, "no bead in its own branch, which the project asks of every gate", Origin.PROJECT)
-            elif gate.kin in with_bead:
-                yield _lacking(gate, "no bead in its own branch, while like gates here have one", Origin.VALUE)
-            elif gate is network[0]:
-                yield _unknown(gate, len(network))
+    for gate in design.gates:
+        covered = _covered(gate)
+        if policy == "never":
+            yield _banned(gate) if gate.beads else Say(gate, Verdict.PASS, "no bead, as the project asks")
+        elif covered == list(EDGES):
+            yield Say(gate, Verdict.PASS, _FITTED, rests_on=Origin.VALUE, parts=gate.beads)
+        elif any(gate.edge(edge).truncated for edge in EDGES):
+            yield _open(gate, "more ways lead to this gate than can be followed")
+        elif covered:
+            yield _one_edge(gate, next(edge for edge in EDGES if edge not in covered), asked=policy == "always")
+        elif policy == "always":
+            yield _lacking(gate, "no bead in its own branch, which the project asks of every gate", Origin.PROJECT)
+        elif gate.kin in with_bead:
+            yield _lacking(gate, "no bead in its own branch, while like gates here have one", Origin.VALUE)
+        else:
+            yield _open(gate, _SHARED if gate.beads else _NONE)
 
 
 def _covered(gate: Gate) -> list[str]:
-    """The edges whose whole current passes a bead that belongs to this gate alone."""
+    """The edges on which every conducting way passes a bead that belongs to this gate alone."""
     own = set(gate.beads) & gate.own_branch
-    return [edge for edge in EDGES if own & gate.edge(edge).covering]
+    return [edge for edge in EDGES if own and _passes(gate.edge(edge), own)]
 
 
-def _one_edge(gate: Gate, bare: str) -> Say:
+def _passes(paths: EdgePaths, beads: set[str]) -> bool:
+    return paths.conducts and not paths.truncated and all(beads & set(way) for way in paths.ways)
+
+
+def _one_edge(gate: Gate, bare: str, *, asked: bool) -> Say:
     return Say(
         gate,
         Verdict.FAIL,
         f"the bead is bypassed on the turn-{bare} edge",
-        level=Level.WARNING,
-        rests_on=Origin.VALUE,
+        level=Level.ERROR if asked else Level.WARNING,
+        rests_on=Origin.PROJECT if asked else Origin.VALUE,
         parts=gate.beads,
         edge=bare,
         advice="move the bead behind the joint of the two branches, next to the gate",
     )
-
-
-def _fitted(gate: Gate) -> Say:
-    message = "a bead in its own branch, on both edges"
-    return Say(gate, Verdict.PASS, message, rests_on=Origin.VALUE, parts=gate.beads)
 
 
 def _lacking(gate: Gate, message: str, origin: Origin) -> Say:
@@ -86,14 +92,13 @@ def _banned(gate: Gate) -> Say:
     )
 
 
-def _unknown(gate: Gate, count: int) -> Say:
-    others = f", {count} gates on one driver" if count > 1 else ""
+def _open(gate: Gate, message: str) -> Say:
     return Say(
         gate,
         Verdict.UNDECIDED,
-        f"no bead in series; whether one is needed depends on the gate's capacitance and loop{others}",
+        message,
         rests_on=Origin.VALUE,
-        parts=gate.gate_resistors,
+        parts=(*gate.gate_resistors, *gate.beads),
         ask=(Ask(gate.name, "input_capacitance", "nF"),),
     )
 

@@ -4,7 +4,6 @@ from __future__ import annotations
 
 from typing import TYPE_CHECKING
 
-from gatecheck.catalogue.load import word_in
 from gatecheck.networks.kinds import Sort
 from gatecheck.networks.ports import WINDING
 from gatecheck.networks.surroundings import Found, Surroundings, amount
@@ -12,7 +11,6 @@ from gatecheck.networks.surroundings import Found, Surroundings, amount
 if TYPE_CHECKING:
     from collections.abc import Iterator
 
-    from gatecheck.design.model import Part
     from gatecheck.networks.circuit import Circuit
     from gatecheck.networks.terminals import Transistor
 
@@ -28,7 +26,7 @@ def against(around: Surroundings, transistor: Transistor) -> Iterator[Found]:
             yield "gate_drain_capacitor", {"part": element.part}
     yield from _follower(circuit, transistor)
     walked = around.walks[transistor.key]
-    if walked.rank < WINDING and is_p_channel(circuit.design.parts[transistor.part]):
+    if walked.rank < WINDING and around.p_channel(transistor):
         for element in circuit.between(transistor.gate_net, [transistor.source_net], Sort.RESISTOR):
             yield "p_channel_pull_up", {"part": element.part}
 
@@ -38,11 +36,6 @@ def _follower(circuit: Circuit, transistor: Transistor) -> Iterator[Found]:
     home = circuit.tied(transistor.source_net)
     for zener in circuit.elements(transistor.gate_net):
         end = zener.other(transistor.gate_net)
-        held = zener.sort in (Sort.ZENER, Sort.DIODE) and end not in home and "GND" in end.upper()
+        held = zener.fitted and zener.sort in (Sort.ZENER, Sort.DIODE) and end not in home and "GND" in end.upper()
         if held and circuit.between(transistor.gate_net, [transistor.drain_net], Sort.RESISTOR):
             yield "follower", {"part": zener.part}
-
-
-def is_p_channel(part: Part) -> bool:
-    """Does its text say that it is a P-channel device?"""
-    return bool(word_in("p_channel", f"{part.description} {part.value} {part.library}".replace("_", " ")))

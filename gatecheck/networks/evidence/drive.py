@@ -21,6 +21,10 @@ if TYPE_CHECKING:
 # Series gate resistance by what it can switch. Origin: common practice.
 _LOW_OHM, _HIGH_OHM, _VERY_HIGH_OHM = 47.0, 470.0, 4700.0
 _SLOW_GATE_S = 100e-6
+_LONGEST_NAME = 60
+_AMPLIFIER_INPUT = re.compile(r"[+-](?:IN)?_?[A-D1-4]?", re.IGNORECASE)
+# Pin names that say gate drive by themselves; GATE, DRV and OUT are used by protection controllers as well.
+_DRIVE_NAMES = ("high_side", "low_side", "split_on", "split_off")
 # What pins of processors and logic are called when their type does not say.
 _PORT_NAME = re.compile(
     r"P[A-K]\d{1,2}(?:[/_(-].*)?|GPIO\w*|IO\d+|P\d+\.\d+|Q[0-7A-H]|Y\d?|[1-8]?Y[1-8]?", re.IGNORECASE
@@ -63,25 +67,24 @@ def _chip_drive(around: Surroundings, transistor: Transistor, pin: Pin, fill: di
     chip = circuit.design.parts[pin.part]
     text = f"{chip.description} {chip.keywords} {chip.library} {chip.value}".replace("_", " ")
     driver = bool(word_in("gate_driver", text))
-    if static_pin(pin.function) or (word_in("static_controller", text) and not driver):
+    if static_pin(pin.function) or word_in("static_controller", text):
         yield "static_controller", fill
         return
     if _is_amplifier(chip, text):
         yield "linear_drive", fill
         return
     rank = around.walks[transistor.key].rank
-    if (
-        rank < NAMED_OUTPUT
-        and not driver
-        and (word_in("logic", text) or _PORT_NAME.fullmatch(plain_pin_name(pin.function)))
-    ):
+    port = _PORT_NAME.fullmatch(plain_pin_name(pin.function)[:_LONGEST_NAME])
+    if rank < NAMED_OUTPUT and not driver and (word_in("logic", text) or port):
         yield "logic_pin", fill
         return
     source = transistor.source_net
     near = (circuit.tied(source) | circuit.tied(transistor.kelvin_net)) - {""}
     holds = any(p.net in near and not circuit.is_rail(p.net) for p in chip.pins)
-    if rank == NAMED_OUTPUT or driver:
+    if driver or (rank == NAMED_OUTPUT and any(pin_is(group, pin.function) for group in _DRIVE_NAMES)):
         yield "driver_output", fill
+    elif rank == NAMED_OUTPUT and not holds:
+        yield "gate_output", fill
     elif holds and len(chip.pins) > 1:
         yield "driver_likely", {**fill, "net": source}
     elif rank in (OUTPUT, CHIP_PIN):
@@ -93,9 +96,12 @@ def _chip_drive(around: Surroundings, transistor: Transistor, pin: Pin, fill: di
 
 
 def _is_amplifier(chip: Part, text: str) -> bool:
-    """An operational amplifier by its words, or by inputs called + and -."""
-    names = {pin.function for pin in chip.pins}
-    return bool(word_in("amplifier", text)) or {"+", "-"} <= names
+    """An operational amplifier by its words, or by inputs called + and -, or +IN and -IN.
+
+    Gate drivers write IN+ and IN-.
+    """
+    signs = {pin.function[0] for pin in chip.pins if _AMPLIFIER_INPUT.fullmatch(pin.function[:_LONGEST_NAME])}
+    return bool(word_in("amplifier", text)) or signs == {"+", "-"}
 
 
 def _helper(circuit: Circuit, walked: Walk, transistor: Transistor) -> bool:

@@ -23,13 +23,13 @@ def test_fires_where_like_gates_have_one() -> None:
     assert fail.advice
 
 
-def test_undecided_where_no_gate_has_one_once_per_network() -> None:
+def test_undecided_where_no_gate_has_one_said_once() -> None:
     findings = findings_of(BARE, "series-bead")
     assert {f.verdict for f in findings} == {Verdict.UNDECIDED}
     assert {ask.datum for f in findings for ask in f.ask} == {"input_capacitance"}
     parallel = BARE + "Q3 NMOS footprint=TO-263-2 G=g3 D=VBUS S=sw\nR3 10 ho g3\n"
     subjects = [s for f in findings_of(parallel, "series-bead") for s in (f.subject, *f.also)]
-    assert sorted(subjects) == ["Q1", "Q2"], "Q3 shares the driver pin of Q1: one line for both"
+    assert sorted(subjects) == ["Q1", "Q2", "Q3"], "every gate has its verdict"
 
 
 def test_at_the_limit_a_bead_on_one_edge_only_fails_for_the_other() -> None:
