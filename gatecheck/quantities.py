@@ -14,7 +14,7 @@ from gatecheck.catalogue.load import pin_is
 from gatecheck.copper.path import NoWay, straight_m
 from gatecheck.finding import Origin, Quantity, least_trusted
 from gatecheck.networks.resistance import least_resistance_ohm
-from gatecheck.physics.gate_current import peak_current_lower_a, peak_current_upper_a
+from gatecheck.physics.ringing import peak_current_a
 from gatecheck.values import Kind, parse_value
 
 if TYPE_CHECKING:
@@ -31,6 +31,8 @@ _ASSUMED_SWING_V = {"gan": 7.0, "sic": 30.0, "igbt": 35.0}
 _ASSUMED_SWING_SI_V = 20.0
 # Driver output and internal gate resistance together, at most: common practice for discrete switches.
 _FURTHER_OHM = 10.0
+# A gate loop that rings harder than this draws less at its peak, but fails for ringing. Our choice.
+_LEAST_DAMPING = 0.5
 _LARGEST_DRIVE_V = 35.0
 _VOLTS = re.compile(r"(?<![\dA-Z.])\+?(\d{1,2})V(\d)?(?![A-Z\d])|(?<=V)[A-Z]*_?(\d{1,2})V?(?![A-Z\d])", re.IGNORECASE)
 # Fields that hold a bead's rating, compared without blanks and case. Origin: common practice.
@@ -191,8 +193,10 @@ class Quantities:
             self._without(name, "no known resistance bounds the gate current", "the peak gate current")
             return None
         volts, origin = self.swing()
-        high = peak_current_upper_a(voltage_v=volts, resistance_ohm=resistance_ohm)
-        low = peak_current_lower_a(voltage_v=volts, resistance_ohm=resistance_ohm, further_ohm=_FURTHER_OHM)
+        high = volts / resistance_ohm
+        most_ohm = resistance_ohm + _FURTHER_OHM
+        ring_ohm = most_ohm / (2 * _LEAST_DAMPING)
+        low = float(peak_current_a(step_v=volts, loop_damping_ratio=_LEAST_DAMPING, characteristic_ohm=ring_ohm))
         return _quantity(low, high, high, "A", least_trusted(origin, Origin.VALUE))
 
     def bead_rating(self) -> tuple[float, Origin] | None:

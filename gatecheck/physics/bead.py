@@ -175,7 +175,7 @@ def crossover_hz(bead: BeadLadder) -> RealArray:
     Returns:
         Hertz, shape (...).
     """
-    return _last_positive_then_negative(bead, resistance_share=1.0)
+    return _first_turn_hz(bead, resistance_share=1.0)
 
 
 def self_resonance_hz(bead: BeadLadder) -> RealArray:
@@ -190,7 +190,7 @@ def self_resonance_hz(bead: BeadLadder) -> RealArray:
     Returns:
         Hertz, shape (...).
     """
-    return _last_positive_then_negative(bead, resistance_share=0.0)
+    return _first_turn_hz(bead, resistance_share=0.0)
 
 
 def capacitive_crossover_hz(bead: BeadLadder) -> RealArray:
@@ -205,7 +205,7 @@ def capacitive_crossover_hz(bead: BeadLadder) -> RealArray:
     Returns:
         Hertz, shape (...).
     """
-    return _last_positive_then_negative(bead, resistance_share=-1.0)
+    return _first_turn_hz(bead, resistance_share=-1.0)
 
 
 def resistance_share(bead: BeadLadder, *, frequency_hz: Real) -> RealArray:
@@ -251,7 +251,7 @@ def scaled_bead(bead: BeadLadder, *, inductance_ratio: Real, resistance_ratio: R
     )
 
 
-def _last_positive_then_negative(bead: BeadLadder, *, resistance_share: float) -> RealArray:
+def _first_turn_hz(bead: BeadLadder, *, resistance_share: float) -> RealArray:
     """Lowest grid interval in which X - share * R turns negative, bisected in log frequency."""
     low, high = _SCAN_DECADES
     exponents = np.linspace(low, high, round((high - low) * _SCAN_PER_DECADE) + 1)
