@@ -24,7 +24,6 @@ from gatecheck.finding import (
     least_trusted,
 )
 from gatecheck.networks.model import EdgePaths
-from gatecheck.quantities import Quantities
 
 if TYPE_CHECKING:
     from collections.abc import Callable, Iterable, Iterator, Sequence
@@ -33,6 +32,7 @@ if TYPE_CHECKING:
     from gatecheck.design.model import Part
     from gatecheck.networks.find import Networks
     from gatecheck.networks.model import GateNetwork, Switch
+    from gatecheck.quantities import Quantities
     from gatecheck.settings import Settings
 
 __all__ = [
@@ -222,6 +222,8 @@ class Design:
     def __init__(
         self, networks: Networks, spot: Callable[[str], Spot], settings: Settings, chains: Chains | None = None
     ) -> None:
+        from gatecheck.quantities import Quantities  # noqa: PLC0415 (listing the rules needs no arithmetic)
+
         self._networks, self._spot, self.settings = networks, spot, settings
         switches = {switch.transistor.key: switch for switch in networks.switches}
         gates = []

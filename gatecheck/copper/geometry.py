@@ -7,6 +7,8 @@ from typing import TYPE_CHECKING
 import numpy as np
 
 if TYPE_CHECKING:
+    from collections.abc import Iterator
+
     from numpy.typing import NDArray
 
     Points = NDArray[np.float64]
@@ -41,6 +43,7 @@ def enclosed_area(points: Points) -> float:
 # Our choice: bounds the work on lines that cross themselves all the time.
 _MAX_SPLITS = 200
 _TINY = 1e-12
+_MOST_PAIRS = 200_000  # of points and lines looked at in one go; bounds memory, our choice
 
 
 def _first_crossing(line: Points) -> tuple[int, int, Points] | None:
@@ -65,24 +68,56 @@ def _first_crossing(line: Points) -> tuple[int, int, Points] | None:
 def crossing_parameters(
     a: Points, b: Points, starts: Points, ends: Points
 ) -> tuple[NDArray[np.float64], NDArray[np.float64], NDArray[np.bool_]]:
-    """Where the line a-b meets each line start-end: position on a-b, on the other, and whether parallel."""
+    """Where the line a-b meets each line start-end: position on a-b, on the other, and whether parallel.
+
+    `a` and `b` are one line, shape (2,), or one for each of the others, shape (n, 2).
+    """
     r, s = b - a, ends - starts
-    det = r[0] * s[:, 1] - r[1] * s[:, 0]
-    scale = np.hypot(*r) * np.hypot(s[:, 0], s[:, 1])
+    det = r[..., 0] * s[:, 1] - r[..., 1] * s[:, 0]
+    scale = np.hypot(r[..., 0], r[..., 1]) * np.hypot(s[:, 0], s[:, 1])
     parallel = np.abs(det) <= _TINY * np.maximum(scale, _TINY)
     safe = np.where(parallel, 1.0, det)
     d = starts - a
     t = (d[:, 0] * s[:, 1] - d[:, 1] * s[:, 0]) / safe
-    u = (d[:, 0] * r[1] - d[:, 1] * r[0]) / safe
+    u = (d[:, 0] * r[..., 1] - d[:, 1] * r[..., 0]) / safe
     return t, u, parallel
 
 
 def project(point: Points, starts: Points, ends: Points) -> tuple[NDArray[np.float64], NDArray[np.float64]]:
-    """Nearest position (0 to 1) of a point on each line, and its distance from there."""
+    """Nearest position (0 to 1) of a point on each line, and its distance from there.
+
+    `point` is one point, shape (2,), or one for each line, shape (n, 2).
+    """
     along = ends - starts
     length2 = np.maximum((along**2).sum(axis=1), _TINY**2)
     t = np.clip(((point - starts) * along).sum(axis=1) / length2, 0, 1)
     return t, np.hypot(*(starts + t[:, None] * along - point).T)
+
+
+def overlapping_pairs(low: Points, high: Points) -> Iterator[tuple[NDArray[np.int64], NDArray[np.int64]]]:
+    """Pairs (i, k), i below k, of upright boxes that touch or overlap, corners `low` and `high`; in portions."""
+    rows = max(_MOST_PAIRS // max(len(low), 1), 1)
+    for first in range(0, len(low), rows):
+        part = slice(first, first + rows)
+        meet = np.ones((len(low[part]), len(low) - first), dtype=bool)
+        for axis in (0, 1):
+            meet &= low[part, axis][:, None] <= high[first:, axis]
+            meet &= high[part, axis][:, None] >= low[first:, axis]
+        i, k = np.nonzero(np.triu(meet, 1))
+        yield i + first, k + first
+
+
+def nearest_gap(points: Points, starts: Points, ends: Points) -> NDArray[np.float64]:
+    """Distance of each point from the nearest of some lines, shape (n,)."""
+    along = ends - starts
+    length2 = np.maximum((along**2).sum(axis=1), _TINY**2)
+    rows = max(_MOST_PAIRS // max(len(starts), 1), 1)
+    gaps = []
+    for part in (points[i : i + rows] for i in range(0, len(points), rows)):
+        x, y = part[:, :1] - starts[:, 0], part[:, 1:] - starts[:, 1]
+        t = np.clip((x * along[:, 0] + y * along[:, 1]) / length2, 0, 1)
+        gaps.append(np.sqrt(((x - t * along[:, 0]) ** 2 + (y - t * along[:, 1]) ** 2).min(axis=1)))
+    return np.concatenate(gaps) if gaps else np.zeros(0)
 
 
 def inside(points: Points, polygon: Points) -> NDArray[np.bool_]:
@@ -90,6 +125,8 @@ def inside(points: Points, polygon: Points) -> NDArray[np.bool_]:
 
     Only edges that reach the points' range of y are looked at: a plane has thousands, a gate trace is short.
     """
+    if (polygon.max(axis=0) < points.min(axis=0)).any() or (polygon.min(axis=0) > points.max(axis=0)).any():
+        return np.zeros(len(points), dtype=bool)
     ends = np.roll(polygon, -1, axis=0)
     low, high = np.minimum(polygon[:, 1], ends[:, 1]), np.maximum(polygon[:, 1], ends[:, 1])
     near = (high > points[:, 1].min()) & (low <= points[:, 1].max()) & (high > low)

@@ -14,13 +14,20 @@ from typing import TYPE_CHECKING, Any
 
 import numpy as np
 
-from gatecheck.copper.geometry import clip_to_box, crosses_rim, crossing_parameters, distance_between, inside, project
+from gatecheck.copper.geometry import (
+    clip_to_box,
+    crosses_rim,
+    crossing_parameters,
+    distance_between,
+    inside,
+    overlapping_pairs,
+    project,
+)
 from gatecheck.copper.model import pad_layers, pad_outline, to_pad
 
 if TYPE_CHECKING:
     from collections.abc import Iterable
 
-    import networkx as nx
     from numpy.typing import NDArray
 
     from gatecheck.copper.geometry import Points
@@ -52,16 +59,20 @@ class _Pieces:
 
 
 class CopperGraph:
-    """The graph of one net. Nodes know their place and layer; edges their length and whether it is certain."""
+    """The graph of one net.
+
+    `edges` holds (length in metres, index of the fill it runs through) by node and neighbour, both ways: plain
+    dictionaries, since a board has a hundred thousand of them and all that is asked of them is a search.
+    """
 
     def __init__(self, copper: NetCopper, pads: Iterable[Pad], stack: Stack) -> None:
-        import networkx as nx  # noqa: PLC0415 (100 ms that a board without gates need not pay)
-
-        self.graph: nx.Graph[Node] = nx.Graph()
+        self.edges: dict[Node, dict[Node, tuple[float, int | None]]] = defaultdict(dict)
         self.pads = tuple(pads)
+        self.node_of: dict[int, Node] = {pad.offset: ("pad", i, "") for i, pad in enumerate(self.pads)}
         self._copper, self._stack = copper, stack
         self.held: dict[int, list[Node]] = {}  # the nodes inside each fill, by its index
         self._pieces = _pieces(copper)
+        self._lengths_m: list[float] = np.hypot(*(self._pieces.ends - self._pieces.starts).T).tolist()
         self.too_large = len(self._pieces) + len(copper.vias) > MAX_PIECES
         if self.too_large:
             return
@@ -76,15 +87,15 @@ class CopperGraph:
 
     def _join(self, one: Node, two: Node, length_m: float, *, fill: int | None = None) -> None:
         """Keep the shortest edge. `fill` names the fill that a straight way runs through."""
-        known = self.graph.get_edge_data(one, two)
-        if known is None or known["length_m"] > length_m:
-            self.graph.add_edge(one, two, length_m=max(length_m, 0.0), fill=fill)
+        known = self.edges[one].get(two)
+        if known is None or known[0] > length_m:
+            self.edges[one][two] = self.edges[two][one] = max(length_m, 0.0), fill
 
     def inside_m(self, pad: Node, other: Node) -> float:
         """How much of an edge from a pad's centre lies inside the pad: all of it where a track or via touches."""
-        edge = self.graph.edges[pad, other]
-        if edge["fill"] is None and other[0] != "pad":
-            return float(edge["length_m"])
+        length_m, fill = self.edges[pad][other]
+        if fill is None and other[0] != "pad":
+            return length_m
         here, there = np.array(self.place(pad)[:2]), np.array(self.place(other)[:2])
         form = self.pads[pad[1]]
         a, b = to_pad(np.stack([here, there]), form)
@@ -93,7 +104,7 @@ class CopperGraph:
 
     def leaves_fill(self, one: Node, two: Node) -> bool:
         """Does an edge through a fill leave it on its straight way? Then the way round is longer."""
-        fill = self.graph.edges[one, two]["fill"]
+        fill = self.edges[one][two][1]
         if fill is None:
             return False
         a, b = np.array(self.place(one)[:2]), np.array(self.place(two)[:2])
@@ -111,12 +122,13 @@ class CopperGraph:
 
     def _station(self, piece: int, t: float) -> Node:
         """A place on a piece; places closer than the touch limit are one."""
-        start, end = self._pieces.starts[piece], self._pieces.ends[piece]
-        length_m = float(np.hypot(*(end - start)))
-        for known in self._stations[piece]:
-            if abs(known - t) * length_m <= _TOUCH_M / 10:
-                return "on", piece, known
-        self._stations[piece][t] = start + t * (end - start)
+        stations = self._stations[piece]
+        if t not in stations:
+            for known in stations:
+                if abs(known - t) * self._lengths_m[piece] <= _TOUCH_M / 10:
+                    return "on", piece, known
+            start, end = self._pieces.starts[piece], self._pieces.ends[piece]
+            stations[t] = start + t * (end - start)
         return "on", piece, t
 
     def _on_layer(self, layer: str) -> NDArray[np.int64]:
@@ -124,29 +136,41 @@ class CopperGraph:
 
     def _touching_tracks(self) -> list[tuple[Node, Node, float]]:
         """Ends on ends and on bodies of other tracks, and crossings."""
-        links: list[tuple[Node, Node, float]] = []
         pieces = self._pieces
         for i in range(len(pieces)):
-            others = self._on_layer(str(pieces.layers[i]))
-            others = others[others != i]
-            for t, point in ((0.0, pieces.starts[i]), (1.0, pieces.ends[i])):
-                self._station(i, t)
-                at, gap = project(point, pieces.starts[others], pieces.ends[others])
-                links += [
-                    (self._station(i, t), self._station(int(others[k]), float(at[k])), float(gap[k]))
-                    for k in np.flatnonzero(gap <= pieces.half_m[others] + _TOUCH_M)
-                ]
-            later = others[others > i]
-            if len(later):
-                links += self._crossings(i, later)
+            self._stations[i] = {0.0: pieces.starts[i], 1.0: pieces.ends[i]}
+        links: list[tuple[Node, Node, float]] = []
+        for layer in sorted(set(pieces.layers.tolist())):
+            here = self._on_layer(layer)
+            grown = pieces.half_m[here][:, None] + _TOUCH_M
+            low = np.minimum(pieces.starts[here], pieces.ends[here]) - grown
+            high = np.maximum(pieces.starts[here], pieces.ends[here]) + grown
+            for first, second in overlapping_pairs(low, high):
+                one, other = here[first], here[second]
+                links += [*self._ends_on(one, other), *self._ends_on(other, one), *self._crossings(one, other)]
         return links
 
-    def _crossings(self, i: int, later: NDArray[np.int64]) -> list[tuple[Node, Node, float]]:
+    def _ends_on(self, one: NDArray[np.int64], other: NDArray[np.int64]) -> list[tuple[Node, Node, float]]:
+        """Where an end of one piece of each pair lies on the copper of the other."""
         pieces = self._pieces
-        t, u, parallel = crossing_parameters(pieces.starts[i], pieces.ends[i], pieces.starts[later], pieces.ends[later])
+        links: list[tuple[Node, Node, float]] = []
+        for t, points in ((0.0, pieces.starts), (1.0, pieces.ends)):
+            at, gap = project(points[one], pieces.starts[other], pieces.ends[other])
+            links += [
+                (("on", int(one[k]), t), self._station(int(other[k]), float(at[k])), float(gap[k]))
+                for k in np.flatnonzero(gap <= pieces.half_m[other] + _TOUCH_M)
+            ]
+        return links
+
+    def _crossings(self, one: NDArray[np.int64], other: NDArray[np.int64]) -> list[tuple[Node, Node, float]]:
+        pieces = self._pieces
+        t, u, parallel = crossing_parameters(
+            pieces.starts[one], pieces.ends[one], pieces.starts[other], pieces.ends[other]
+        )
         hit = ~parallel & (t > 0) & (t < 1) & (u > 0) & (u < 1)
         return [
-            (self._station(i, float(t[k])), self._station(int(later[k]), float(u[k])), 0.0) for k in np.flatnonzero(hit)
+            (self._station(int(one[k]), float(t[k])), self._station(int(other[k]), float(u[k])), 0.0)
+            for k in np.flatnonzero(hit)
         ]
 
     def _touching_vias(self) -> list[tuple[Node, Node, float]]:
@@ -187,9 +211,8 @@ class CopperGraph:
         """The places on each piece in a row. Reaching into a pad is settled by the pad's own edges."""
         for i, stations in self._stations.items():
             ordered = sorted(stations)
-            length_m = float(np.hypot(*(self._pieces.ends[i] - self._pieces.starts[i])))
             for before, after in pairwise(ordered):
-                self._join(("on", i, before), ("on", i, after), (after - before) * length_m)
+                self._join(("on", i, before), ("on", i, after), (after - before) * self._lengths_m[i])
 
     def _add_vias(self) -> None:
         for i, via in enumerate(self._copper.vias):

@@ -14,7 +14,7 @@ from typing import TYPE_CHECKING
 
 import numpy as np
 
-from gatecheck.copper.geometry import enclosed_area, inside, project
+from gatecheck.copper.geometry import enclosed_area, inside, nearest_gap
 from gatecheck.copper.model import pad_layers
 from gatecheck.copper.path import NoWay
 
@@ -25,6 +25,7 @@ if TYPE_CHECKING:
 
     from gatecheck.copper.chain import Chain, Chains
     from gatecheck.copper.geometry import Points
+    from gatecheck.copper.source import CopperSource
     from gatecheck.design.model import Pad
     from gatecheck.networks.model import Drive, GateNetwork
 
@@ -153,34 +154,47 @@ def _sample(chains: Chains, forward: Chain, nets: Iterable[str]) -> _Sampled:
         lengths,
         _Gaps.none(len(middles)),
         _Gaps.none(len(middles)),
-        tuple((net, i) for net in nets for i in range(len(chains.copper.source.net(net).fills))),
+        _fills_near(chains.copper.source, nets, middles),
     )
     stack = chains.copper.source.stack
-    for key, (net, i) in enumerate(sampled.names):
-        fill = chains.copper.source.net(net).fills[i]
-        for layer in sorted(set(layers)):
-            mine = np.flatnonzero(np.array([name == layer for name in layers]))
+    on_layer = {layer: np.flatnonzero(np.array(layers) == layer) for layer in sorted(set(layers))}
+    fills = [chains.copper.source.net(net).fills[i] for net, i in sampled.names]
+    for key, fill in enumerate(fills):
+        for layer, mine in on_layer.items():
             height_m = stack.height_m(layer, fill.layer)
             under = mine[inside(middles[mine], fill.outline)] if height_m > 0 else mine[:0]
-            sampled.any_near.take(under, height_m, key)
-            if fill.layer in stack.neighbours(layer):
-                sampled.next_layer.take(under, height_m, key)
-    for key, (net, i) in enumerate(sampled.names):
-        _look_beside(middles, sampled.any_near, chains.copper.source.net(net).fills[i].outline, key)
+            if len(under):
+                sampled.any_near.take(under, height_m, key)
+                if fill.layer in stack.neighbours(layer):
+                    sampled.next_layer.take(under, height_m, key)
+    for key, fill in enumerate(fills):
+        _look_beside(middles, sampled.any_near, fill.outline, key)
     return sampled
+
+
+def _fills_near(source: CopperSource, nets: Iterable[str], points: Points) -> tuple[tuple[str, int], ...]:
+    """The fills of some nets that the way could see: a ground net has one on every corner of a large board."""
+    low, high = points.min(axis=0) - _BESIDE_M, points.max(axis=0) + _BESIDE_M
+    found: list[tuple[str, int]] = []
+    for net in nets:
+        least, most = source.fill_boxes(net)
+        near = ((most >= low) & (least <= high)).all(axis=1)
+        found += [(net, i) for i in np.flatnonzero(near).tolist()]
+    return tuple(found)
 
 
 def _look_beside(middles: Points, gaps: _Gaps, outline: Points, key: int) -> None:
     """Where nothing is under the way, take the gap to the edge of a fill beside it, seen from above."""
-    starts, ends = outline, np.roll(outline, -1, axis=0)
-    low, high = middles.min(axis=0) - _BESIDE_M, middles.max(axis=0) + _BESIDE_M
-    near = (np.maximum(starts, ends) >= low).all(axis=1) & (np.minimum(starts, ends) <= high).all(axis=1)
-    if not near.any():
+    bare = np.flatnonzero(np.isnan(gaps.metres))
+    if not len(bare):
         return
-    for i in np.flatnonzero(np.isnan(gaps.metres)).tolist():
-        gap_m = float(project(middles[i], starts[near], ends[near])[1].min())
-        if gap_m <= _BESIDE_M:
-            gaps.take(np.array([i]), gap_m, key)
+    starts, ends = outline, np.roll(outline, -1, axis=0)
+    low, high = middles[bare].min(axis=0) - _BESIDE_M, middles[bare].max(axis=0) + _BESIDE_M
+    near = ((np.maximum(starts, ends) >= low) & (np.minimum(starts, ends) <= high)).all(axis=1)
+    if near.any():
+        gap_m = nearest_gap(middles[bare], starts[near], ends[near])
+        beside = gap_m <= _BESIDE_M
+        gaps.take(bare[beside], gap_m[beside], key)
 
 
 def _corners(chains: Chains, forward: Chain) -> tuple[Points, list[str]]:
@@ -191,15 +205,16 @@ def _corners(chains: Chains, forward: Chain) -> tuple[Points, list[str]]:
         side = ""
         if leg.body:
             side = "B.Cu" if chains.circuit.design.parts[leg.what].side == "bottom" else "F.Cu"
-        for (x0, y0, from_layer), (x1, y1, to_layer) in pairwise(leg.points):
-            a, b = np.array([x0, y0]), np.array([x1, y1])
-            count = int(min(max(np.ceil(np.hypot(*(b - a)) / _STEP_M), 1), _MAX_SAMPLES))
-            pieces = a + (b - a) * np.linspace(0, 1, count + 1)[:, None]
-            if not corners:
-                corners.append(pieces[0])
-            corners += list(pieces[1:])
-            layers += [side or from_layer or to_layer or "F.Cu"] * count
-    return np.array(corners), layers
+        places = np.array([point[:2] for point in leg.points])
+        steps = np.hypot(*np.diff(places, axis=0).T) / _STEP_M
+        counts = np.clip(np.ceil(steps), 1, _MAX_SAMPLES).astype(int).tolist()
+        if not corners:
+            corners.append(places[:1])
+        for i, count in enumerate(counts):
+            share = np.arange(1, count + 1)[:, None] / count
+            corners.append(places[i] + (places[i + 1] - places[i]) * share)
+            layers += [side or leg.points[i][2] or leg.points[i + 1][2] or "F.Cu"] * count
+    return np.concatenate(corners), layers
 
 
 def _over_return(chains: Chains, sampled: _Sampled, gaps: _Gaps, ends: _Ends) -> float:

@@ -97,8 +97,7 @@ class Copper:
 
 
 def _nodes(graph: CopperGraph, pads: Sequence[Pad]) -> set[Node]:
-    ends: dict[int, Node] = {pad.offset: ("pad", i, "") for i, pad in enumerate(graph.pads)}
-    return {ends[pad.offset] for pad in pads if pad.offset in ends}
+    return {graph.node_of[pad.offset] for pad in pads if pad.offset in graph.node_of}
 
 
 def _shortest(graph: CopperGraph, starts: set[Node], goals: set[Node], free: set[Node]) -> CopperWay | None:
@@ -118,7 +117,7 @@ def _shortest(graph: CopperGraph, starts: set[Node], goals: set[Node], free: set
 
 def _cost(graph: CopperGraph, one: Node, two: Node, free: set[Node]) -> float:
     """Length of an edge without what lies inside the free pads at its ends."""
-    length_m = float(graph.graph.edges[one, two]["length_m"])
+    length_m = graph.edges[one][two][0]
     for pad, other in ((one, two), (two, one)):
         if pad in free:
             length_m -= graph.inside_m(pad, other)
@@ -130,7 +129,7 @@ def _search(graph: CopperGraph, starts: set[Node], goals: set[Node], free: set[N
 
     Returns the nodes from start to goal; none if no goal is reached.
     """
-    neighbours = graph.graph.adj
+    neighbours = graph.edges
     lengths = {node: 0.0 for node in sorted(starts) if node in neighbours}
     before: dict[Node, Node] = {}
     queue = [(0.0, i, node) for i, node in enumerate(lengths)]
@@ -146,8 +145,9 @@ def _search(graph: CopperGraph, starts: set[Node], goals: set[Node], free: set[N
             while way[-1] in before:
                 way.append(before[way[-1]])
             return way[::-1]
-        for node, edge in neighbours[here].items():
-            step_m = _cost(graph, here, node, free) if here in free or node in free else edge["length_m"]
+        for node, (step_m, _) in neighbours[here].items():
+            if here in free or node in free:
+                step_m = _cost(graph, here, node, free)  # noqa: PLW2901 (the rare case of the same number)
             if length_m + step_m < lengths.get(node, np.inf):
                 lengths[node], before[node] = length_m + step_m, here
                 count += 1

@@ -13,6 +13,7 @@ from gatecheck.parse.copper import read_copper
 if TYPE_CHECKING:
     from collections.abc import Iterable
 
+    from gatecheck.copper.geometry import Points
     from gatecheck.errors import InputError
     from gatecheck.parse.board import BoardFile, StackForm
     from gatecheck.parse.copper import NetForms, TrackForm
@@ -29,6 +30,7 @@ class CopperSource:
     def __init__(self, board: BoardFile) -> None:
         self._board = board
         self._nets: dict[str, NetCopper] = {}
+        self._boxes: dict[str, tuple[Points, Points]] = {}
         self.troubles: list[InputError] = []
         self.stack = _stack(board)
 
@@ -45,8 +47,17 @@ class CopperSource:
 
     def net(self, name: str) -> NetCopper:
         """All copper of a net but its pads."""
-        self.expect([name])
+        if name not in self._nets:
+            self.expect([name])
         return self._nets.get(name, _BARE)
+
+    def fill_boxes(self, name: str) -> tuple[Points, Points]:
+        """Least and greatest corner of each fill of a net, shape (n, 2) each."""
+        if name not in self._boxes:
+            outlines = [fill.outline for fill in self.net(name).fills]
+            least = np.array([outline.min(axis=0) for outline in outlines]).reshape(-1, 2)
+            self._boxes[name] = least, np.array([outline.max(axis=0) for outline in outlines]).reshape(-1, 2)
+        return self._boxes[name]
 
 
 _BARE = NetCopper((), (), (), unfilled=False)

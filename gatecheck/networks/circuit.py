@@ -119,11 +119,13 @@ class Circuit:
         if known is None:
             reached, edge = ({net}, {net}) if net else (set[str](), set[str]())
             for _ in range(_SHUNT_HOPS):
+                # Looking at all shunts of a rail once per gate would take the square of the gates.
                 edge = {
                     other
                     for here in edge
+                    if here == net or not self.is_rail(here)
                     for other, sort in self._shunts.get(here, ())
-                    if not self.is_rail(here) or (here == net and sort is Sort.NET_TIE)
+                    if sort is Sort.NET_TIE or not self.is_rail(here)
                 } - reached
                 reached |= edge
             known = self._tied[net] = frozenset(reached)

@@ -28,6 +28,12 @@ if TYPE_CHECKING:
 
 _NET = re.compile(rb'\(net\s+(?:"((?:[^"\\]|\\.)*)"|([^\s()"]+))')
 _POINT = re.compile(rb"\(xy\s+([+-]?[\d.]{1,20})\s+([+-]?[\d.]{1,20})\s*\)")
+_SIZE = rb"([+-]?\d{1,5}(?:\.\d{1,12})?)"
+# A track as programs write it. Thousands of them are read; what looks otherwise goes through the parser.
+_TRACK = re.compile(
+    rb"\(segment\s+\(start %b %b\)\s+\(end %b %b\)\s+\(width %b\)\s+" % ((_SIZE,) * 5)
+    + rb'\(layer (?:"([\w.]+)"|([\w.]+))\)\s+\(net[ )]'
+)
 # From this version on, fills are drawn as they are; before, and where a zone says so, the outline is stroked.
 _UNSTROKED_FILLS = 20220211
 # Our choice: more points than the densest ground plane seen; bounds memory.
@@ -135,6 +141,14 @@ class _Copper:
         return self.board.layers.get(name, name)
 
     def track(self, span: Span) -> None:
+        usual = _TRACK.match(self.board.document.data, span.start, span.end)
+        if usual is not None:
+            x0, y0, x1, y1, width_mm = map(float, usual.groups()[:5])
+            layer = self.layer((usual[6] or usual[7]).decode())
+            self.into.tracks.append(
+                TrackForm(((x0, y0), (x1, y1)), max(width_mm, 0.0), layer if layer.endswith(".Cu") else "")
+            )
+            return
         forms = self.children(span)
         corners = [forms[head] for head in ("start", "mid", "end") if head in forms]
         points = tuple((number(node), number(node, 2)) for node in corners)

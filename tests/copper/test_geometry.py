@@ -8,7 +8,16 @@ import random
 import numpy as np
 import pytest
 
-from gatecheck.copper.geometry import arc_points, clip_to_box, distance_between, enclosed_area, inside, polygon_area
+from gatecheck.copper.geometry import (
+    arc_points,
+    clip_to_box,
+    distance_between,
+    enclosed_area,
+    inside,
+    nearest_gap,
+    overlapping_pairs,
+    polygon_area,
+)
 
 
 def test_area_of_simple_and_crossing_lines() -> None:
@@ -82,3 +91,29 @@ def test_clipping_to_a_box() -> None:
     assert clip_to_box(np.array([-4.0, 0]), np.array([4.0, 0]), half) == pytest.approx((0.375, 0.625))
     assert clip_to_box(np.array([0.0, 0]), np.array([0.0, 4.0]), half) == pytest.approx((0, 0.5))
     assert clip_to_box(np.array([3.0, 0]), np.array([3.0, 4.0]), half) is None
+
+
+@pytest.mark.parametrize("seed", range(3))
+def test_gaps_to_many_lines_agree_with_shapely(seed: int) -> None:
+    import shapely
+
+    draw = np.random.default_rng(seed)
+    points, starts, ends = draw.random((700, 2)), draw.random((300, 2)), draw.random((300, 2))
+    lines = shapely.MultiLineString([(a, b) for a, b in zip(starts, ends, strict=True)])
+    assert nearest_gap(points, starts, ends) == pytest.approx(shapely.distance(shapely.points(points), lines))
+
+
+@pytest.mark.parametrize(("seed", "count"), [(0, 1), (1, 40), (2, 900)])
+def test_overlapping_pairs_are_those_found_one_by_one(seed: int, count: int) -> None:
+    draw = np.random.default_rng(seed)
+    low = draw.random((count, 2))
+    high = low + draw.random((count, 2)) * 0.05
+    found = [(i, k) for ones, others in overlapping_pairs(low, high) for i, k in zip(ones, others, strict=True)]
+    wanted = {
+        (i, k)
+        for i in range(count)
+        for k in range(i + 1, count)
+        if (low[i] <= high[k]).all() and (low[k] <= high[i]).all()
+    }
+    assert len(found) == len(set(found))
+    assert set(found) == wanted
