@@ -3,10 +3,11 @@
 from __future__ import annotations
 
 import hashlib
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 from typing import TYPE_CHECKING
 
 from gatecheck.design.build import from_board, from_netlist
+from gatecheck.errors import InputError
 from gatecheck.files import read_bytes, shown_path
 from gatecheck.parse.document import Document, open_document
 from gatecheck.parse.sniff import FileKind, sniff
@@ -14,44 +15,128 @@ from gatecheck.report_model import InputFile
 from gatecheck.settings import MAX_BYTES, NAME, Settings, read_settings
 
 if TYPE_CHECKING:
+    from collections.abc import Mapping
     from pathlib import Path
 
+    from gatecheck.design.join import OutOfStep
     from gatecheck.design.model import Design
-    from gatecheck.errors import InputError
     from gatecheck.parse.board import BoardFile
+    from gatecheck.parse.project import Project
 
 
 @dataclass(frozen=True, slots=True)
 class Loaded:
-    """A design with the file it came from; `troubles` are its forms that could not be read."""
+    """A design with the files it came from, the main one first.
 
-    source: InputFile
-    document: Document
+    `troubles` are forms that could not be read; `out_of_step` is where board and schematic differ.
+    """
+
+    sources: tuple[InputFile, ...]
+    documents: Mapping[str, Document]
     design: Design
     troubles: tuple[InputError, ...]
-    board: BoardFile | None
+    board: BoardFile | None = None
+    out_of_step: OutOfStep | None = None
+
+    @property
+    def source(self) -> InputFile:
+        """The main file."""
+        return self.sources[0]
+
+
+def load_project(project: Project) -> Loaded:
+    """Read a design with all its files: a board is joined with its schematic.
+
+    Raises:
+        InputError: if the main file cannot be read. Of a schematic beside a board, that is a trouble.
+    """
+    loaded = load_design(project.path)
+    if project.sheets is None or loaded.board is None:
+        return loaded
+    try:
+        document, source = _opened(project.sheets)
+        drawn, paths, sources, documents, troubles = _schematic(project.sheets, document, source)
+    except InputError as why:
+        return replace(loaded, troubles=(*loaded.troubles, why))
+    from gatecheck.design.join import join_designs  # noqa: PLC0415 (only what is needed)
+
+    design, step = join_designs(loaded.design, drawn, paths)
+    return Loaded(
+        (*loaded.sources, *sources),
+        {**loaded.documents, **documents},
+        design,
+        (*loaded.troubles, *troubles),
+        loaded.board,
+        # Half a schematic differs from any board; what is missing has been said.
+        step if not troubles else None,
+    )
 
 
 def load_design(path: Path) -> Loaded:
-    """Read one board or netlist.
+    """Read one board, schematic or netlist.
 
     Raises:
         InputError: if it cannot be read at all.
     """
-    shown = shown_path(path)
-    data = read_bytes(path)
-    kind = sniff(shown, data)
-    document = open_document(shown, data)
-    source = InputFile(shown, kind.value, hashlib.sha256(data).hexdigest())
-    if kind is FileKind.BOARD:
+    document, source = _opened(path)
+    if source.kind == FileKind.BOARD.value:
         from gatecheck.parse.board import read_board  # noqa: PLC0415 (only what is needed)
 
         board = read_board(document)
-        return Loaded(source, document, from_board(board), board.troubles, board)
+        return Loaded((source,), {document.path: document}, from_board(board), board.troubles, board)
+    if source.kind == FileKind.SCHEMATIC.value:
+        design, _, sources, documents, troubles = _schematic(path, document, source)
+        return Loaded(sources, documents, design, troubles)
     from gatecheck.parse.netlist import read_netlist  # noqa: PLC0415 (the same)
 
     netlist = read_netlist(document)
-    return Loaded(source, document, from_netlist(netlist), netlist.troubles, None)
+    return Loaded((source,), {document.path: document}, from_netlist(netlist), netlist.troubles)
+
+
+def _opened(path: Path) -> tuple[Document, InputFile]:
+    shown = shown_path(path)
+    data = read_bytes(path)
+    kind = sniff(shown, data)
+    return open_document(shown, data), InputFile(shown, kind.value, hashlib.sha256(data).hexdigest())
+
+
+def _schematic(
+    path: Path, document: Document, source: InputFile
+) -> tuple[Design, Mapping[str, str], tuple[InputFile, ...], Mapping[str, Document], tuple[InputError, ...]]:
+    """A schematic with all its sheets: design, part of each symbol path, files, documents and troubles.
+
+    Raises:
+        InputError: if there is no symbol on any sheet.
+    """
+    from gatecheck.design.from_sheets import from_sheets  # noqa: PLC0415 (only what is needed)
+    from gatecheck.parse.sheets import read_hierarchy  # noqa: PLC0415 (the same)
+
+    places, documents, sources = {document.path: path}, {document.path: document}, [source]
+    reach = _repository(path.resolve().parent) or path.resolve().parent
+
+    def fetch(above: str, name: str) -> Document:
+        file = places[above].parent / name.replace("\\", "/")
+        if not name or not file.resolve().is_relative_to(reach):
+            raise InputError("this sheet lies outside the project", "move its file into the project", above)
+        shown = shown_path(file.parent.resolve() / file.name) if ".." in file.parts else shown_path(file)
+        if shown not in documents:
+            below, found = _opened(file)
+            if found.kind != FileKind.SCHEMATIC.value:
+                raise InputError("this sheet's file is no schematic", "name a .kicad_sch file in the sheet", above)
+            documents[shown], places[shown] = below, file
+            sources.append(found)
+        return documents[shown]
+
+    hierarchy = read_hierarchy(document, fetch)
+    if not any(file.symbols for file in hierarchy.files.values()) and not hierarchy.troubles:
+        raise InputError("no part is drawn in this schematic", "give a schematic with symbols", document.path)
+    design, paths = from_sheets(hierarchy)
+    return design, paths, tuple(sources), documents, tuple(hierarchy.troubles)
+
+
+def _repository(folder: Path) -> Path | None:
+    """The root of the repository a folder lies in."""
+    return next((here for here in (folder, *folder.parents) if (here / ".git").exists()), None)
 
 
 def load_settings(path: Path) -> tuple[Settings, InputFile | None]:
@@ -76,10 +161,10 @@ def _settings_file(path: Path) -> Path | None:
     beside = folder / NAME
     if beside.is_file():
         return path.parent / NAME
-    above = [folder, *folder.parents]
-    root = next((here for here in above if (here / ".git").exists()), None)
+    root = _repository(folder)
     if root is None:
         return None
+    above = [folder, *folder.parents]
     for here in above[1 : above.index(root) + 1]:
         if (here / NAME).is_file():
             return here / NAME

@@ -9,7 +9,7 @@ from gatecheck import rulekit
 from gatecheck.errors import GatecheckError, InputError, RuleError
 from gatecheck.files import shown_path
 from gatecheck.finding import Finding, Level, Quantity, Spot, Verdict, at_least
-from gatecheck.load import Loaded, load_design, load_settings
+from gatecheck.load import Loaded, load_project, load_settings
 from gatecheck.networks.find import Networks, find_networks
 from gatecheck.networks.surroundings import name_of
 from gatecheck.parse.project import Project, find_projects
@@ -49,8 +49,8 @@ def review(paths: Iterable[Path], *, with_rules: bool = True, block_at: Level | 
     found = _Gathered()
     for project in _projects(paths, found):
         try:
-            loaded = load_design(project.path)
-            settings, file = load_settings(project.path)
+            loaded = load_project(project)
+            settings, settings_file = load_settings(project.path)
         except InputError as why:
             if project.named or project.path.suffix != ".net":
                 found.unread.append(_unread(why))
@@ -58,7 +58,7 @@ def review(paths: Iterable[Path], *, with_rules: bool = True, block_at: Level | 
                 # Other programs write .net files as well; one that lies in a named folder is not our business.
                 found.not_judged.append(NotJudged(None, why.path, why.message, "name the file to see why"))
             continue
-        found.inputs += [loaded.source, *([file] if file is not None and file not in found.inputs else [])]
+        found.inputs += [file for file in (*loaded.sources, settings_file) if file and file not in found.inputs]
         new = _review_one(loaded, project, settings, found, with_rules=with_rules)
         level = block_at or Level(settings.block_at)
         found.blocked |= any(f.verdict is Verdict.FAIL and at_least(f.level, level) for f in new)
@@ -99,10 +99,12 @@ def _review_one(
         NotJudged(None, shown_path(other), reason, "give this file alone to review it")
         for other, reason in project.passed_over
     ]
-    found.not_judged += [NotJudged(None, path, note, "") for note in loaded.document.notes]
+    found.not_judged += [
+        NotJudged(None, name, note, "") for name, document in loaded.documents.items() for note in document.notes
+    ]
     found.not_judged += _unclear(networks, path)
     chains = _chains(loaded, networks) if with_rules and networks.gates else None
-    design = rulekit.Design(networks, spot_finder(loaded), settings, chains)
+    design = rulekit.Design(networks, spot_finder(loaded), settings, chains, loaded.out_of_step)
     findings = _apply_rules(design, path) if with_rules else []
     found.designs.append(Reviewed(networks, _quantities(design) if with_rules else {}))
     if chains is not None:
@@ -178,7 +180,7 @@ def spot_finder(loaded: Loaded) -> Callable[[str], Spot]:
 
     def spot(key: str) -> Spot:
         part = loaded.design.parts[key]
-        line, column = loaded.document.place(part.place.offset)
+        line, column = loaded.documents[part.place.file].place(part.place.offset)
         x_m, y_m = part.place.x_m, part.place.y_m
         return Spot(
             file=part.place.file,

@@ -29,6 +29,7 @@ if TYPE_CHECKING:
     from collections.abc import Callable, Iterable, Iterator, Sequence
 
     from gatecheck.copper.chain import Chains
+    from gatecheck.design.join import OutOfStep
     from gatecheck.design.model import Part
     from gatecheck.networks.find import Networks
     from gatecheck.networks.model import GateNetwork, Switch
@@ -53,6 +54,7 @@ __all__ = [
 ]
 
 EDGES = ("on", "off")
+_WHOLE = "the board"  # subject of what is said of the whole design
 
 
 @dataclass(frozen=True, slots=True)
@@ -107,13 +109,13 @@ def remembered(note: float, warning: float) -> tuple[Bound, Bound]:
 
 @dataclass(frozen=True, slots=True)
 class Say:
-    """A rule's verdict on one gate, before its level is capped and its places are filled in.
+    """A rule's verdict on one gate, or on the whole design where `gate` is None.
 
-    `message` names no part of this channel, so that repeated channels are said once; `parts` are the parts
-    it is about, in the order a reader should look at them.
+    Its level is capped and its places are filled in later. `message` names no part of this channel, so that
+    repeated channels are said once; `parts` are the parts it is about, in the order a reader should look at them.
     """
 
-    gate: Gate
+    gate: Gate | None
     verdict: Verdict
     message: str
     level: Level = Level.NONE
@@ -220,11 +222,17 @@ class Design:
     """The gates of one design, and what rules may know of its parts."""
 
     def __init__(
-        self, networks: Networks, spot: Callable[[str], Spot], settings: Settings, chains: Chains | None = None
+        self,
+        networks: Networks,
+        spot: Callable[[str], Spot],
+        settings: Settings,
+        chains: Chains | None = None,
+        out_of_step: OutOfStep | None = None,
     ) -> None:
         from gatecheck.quantities import Quantities  # noqa: PLC0415 (listing the rules needs no arithmetic)
 
         self._networks, self._spot, self.settings = networks, spot, settings
+        self.out_of_step = out_of_step  # of board and schematic; None where there is only one of them
         switches = {switch.transistor.key: switch for switch in networks.switches}
         gates = []
         for network in networks.gates:
@@ -243,37 +251,56 @@ class Design:
         """A part by its id."""
         return self._networks.design.parts[key]
 
+    def at_a_gate(self, step: OutOfStep) -> bool:
+        """Does a difference touch what stands between a driver and a gate?"""
+        nets = {gate.network.transistor.gate_net for gate in self.gates}
+        nets |= {net for gate in self.gates for edge in EDGES for s in gate.edge(edge).steps for net in (s.near, s.far)}
+        parts = {step.part for gate in self.gates for edge in EDGES for step in gate.edge(edge).steps}
+        parts |= {gate.part for gate in self.gates}
+        signals = {net for net in nets if not self.is_rail(net)}
+        return any(pin.board_net in signals or pin.part in parts for pin in step.moved) or not parts.isdisjoint(
+            step.not_in_schematic
+        )
+
     def is_rail(self, net: str) -> bool:
         """Is a net a supply or a ground?"""
         return self._networks.circuit.is_rail(net)
 
     def finding(self, rule: Rule, say: Say) -> Finding:
         """The finding of a verdict: level capped by what it rests on, places and fingerprint filled in."""
-        rests_on = least_trusted(say.rests_on, Origin.ASSUMED) if say.gate.likely else say.rests_on
+        gate = say.gate
+        rests_on = least_trusted(say.rests_on, Origin.ASSUMED) if gate is not None and gate.likely else say.rests_on
         level, message = say.level if say.verdict is Verdict.FAIL else Level.NONE, say.message
         if level is Level.ERROR and rests_on in WEAK_ORIGINS:
             level = Level.WARNING
         if say.verdict is Verdict.FAIL and rests_on in WEAK_ORIGINS:
             message = f"likely: {message}"
-        part = self.part(say.gate.part)
-        # Panels repeat symbols; the part's id tells the copies apart where the symbol does not.
-        identity = f"{part.symbol_path} {part.id}" if part.symbol_path else part.id
+        parts = say.parts if gate is None else (*say.parts, gate.part)
         return Finding(
             rule=rule.id,
             verdict=say.verdict,
             level=level,
-            subject=say.gate.name,
+            subject=gate.name if gate is not None else _WHOLE,
             message=message,
             rests_on=rests_on,
-            fingerprint=fingerprint(rule.id, identity, say.gate.network.transistor.unit or "", say.edge or ""),
+            fingerprint=fingerprint(rule.id, *self._identity(gate), say.edge or ""),
             edge=say.edge,
             quantity=say.quantity,
             value=say.value,
             limit=say.limit,
             ask=say.ask,
-            places=tuple(self._spot(key) for key in dict.fromkeys((*say.parts, say.gate.part))),
+            places=tuple(self._spot(key) for key in dict.fromkeys(parts)),
             advice=say.advice,
         )
+
+    def _identity(self, gate: Gate | None) -> tuple[str, ...]:
+        """What tells a subject from all others, whatever else changes."""
+        if gate is None:
+            return ("",)
+        part = self.part(gate.part)
+        # Panels repeat symbols; the part's id tells the copies apart where the symbol does not.
+        identity = f"{part.symbol_path} {part.id}" if part.symbol_path else part.id
+        return identity, gate.network.transistor.unit or ""
 
 
 def grouped(findings: Iterable[Finding]) -> list[Finding]:

@@ -43,16 +43,16 @@ BROKEN: dict[str, tuple[bytes, str]] = {
     "blank": (b" \n\t\n", "empty"),
     "binary": (b"\x7fELF\x02\x01\x00\x00" * 50, "no UTF-8 text"),
     "utf-16": ("(kicad_pcb)".encode("utf-16"), "no UTF-8 text"),
-    "prose": (b"Dear all,\nthe board is ready.\n", "no board and no netlist"),
+    "prose": (b"Dear all,\nthe board is ready.\n", "no board, schematic or netlist"),
     "xml netlist": (b'<?xml version="1.0"?><export></export>', "netlist in XML"),
     "legacy schematic": (b"EESchema Schematic File Version 4\n", "legacy text schematic"),
     "old board": (b"PCBNEW-BOARD Version 1\n", "before S-expressions"),
     "spice": (b"* source x\nR1 a b 1\n.end\n", "circuit-simulator"),
     "symbol library": (b'(kicad_symbol_lib (version 20241209) (symbol "R"))', "symbol library"),
-    "sheet": (b"(kicad_sch (version 20250114))", "schematic sheet"),
+    "empty sheet": (b"(kicad_sch (version 20250114))", "no part is drawn"),
     "settings": (b'{"board": {}}', "project or settings file"),
     "archive": (b"PK\x03\x04" + b"\x01" * 100, "an archive"),
-    "other form": (b"(export_list (a b))", "no board and no netlist"),
+    "other form": (b"(export_list (a b))", "no board, schematic or netlist"),
     "empty board": (HEAD.encode() + b")", "empty board"),
     "stub board": (b"(kicad_pcb (version 4) (host pcbnew stub))", "empty board"),
     "empty netlist": (b'(export (version "E") (components) (nets))', "empty netlist"),
@@ -60,7 +60,7 @@ BROKEN: dict[str, tuple[bytes, str]] = {
     "cut in text": ((HEAD + '(footprint "Own').encode(), "never ends"),
     "too many brackets": ((HEAD + footprint() + "))").encode(), "no opening one"),
     "two roots": ((HEAD + footprint() + ") (kicad_pcb)").encode(), "after the form"),
-    "words before": (b"hello (kicad_pcb)", "no board and no netlist"),
+    "words before": (b"hello (kicad_pcb)", "no board, schematic or netlist"),
     "nesting bomb": (HEAD.encode() + b"(" * 3_000_000, "nest deeper"),
     "quote bomb": (b'(kicad_pcb "' + b'\\"' * 2_000_000, "never ends"),
     "nan": ((HEAD + footprint(PAD.replace("(at 0 0)", "(at nan 0)")) + ")").encode(), "'nan' where a number belongs"),
@@ -139,7 +139,7 @@ def test_a_folder_without_designs_is_said_so(tmp_path: Path) -> None:
     (tmp_path / ".git" / "x.kicad_pcb").write_text("(kicad_pcb)")
     (tmp_path / "_autosave-x.kicad_pcb").write_text("(kicad_pcb)")
     code, _, err = run("review", tmp_path)
-    assert (code, "no board and no netlist in this folder" in err) == (3, True)
+    assert (code, "no board, schematic or netlist in this folder" in err) == (3, True)
 
 
 def test_oversized_files_are_refused_before_they_are_read(tmp_path: Path) -> None:

@@ -28,7 +28,7 @@ _NUMBERED_FUNCTIONS = 10
 def from_board(board: BoardFile) -> Design:
     """The Design of a board alone."""
     path = board.document.path
-    names = _identities(form.reference for form in board.footprints)
+    names = identities(form.reference for form in board.footprints)
     parts = {name: _part_of_footprint(name, form, path) for name, form in zip(names, board.footprints, strict=True)}
     return joined(path, "board", parts)
 
@@ -41,7 +41,7 @@ def from_netlist(netlist: NetlistFile) -> Design:
         for node in entries:
             nodes[node.reference].append((net, node))
     parts = {}
-    names = _identities(component.reference for component in netlist.components)
+    names = identities(component.reference for component in netlist.components)
     for name, component in zip(names, netlist.components, strict=True):
         # Of duplicate references a netlist joins the pins; they go to the first part of that name.
         mine = nodes.pop(component.reference, [])
@@ -53,7 +53,7 @@ def from_netlist(netlist: NetlistFile) -> Design:
     return joined(path, "netlist", parts)
 
 
-def _identities(references: Iterable[str]) -> list[str]:
+def identities(references: Iterable[str]) -> list[str]:
     """`R5` where there is one R5, `R5~2` for the second in file order; unnamed parts are `~1`, `~2`."""
     listed = list(references)
     taken, seen = set(listed), Counter[str]()

@@ -8,11 +8,12 @@ from pathlib import Path
 
 from gatecheck.errors import InputError
 from gatecheck.files import shown_path
+from gatecheck.parse.sheet_owners import SheetOwners
 from gatecheck.settings import NAME
 
 _BOARD, _NETLIST, _SHEET, _PROJECT = ".kicad_pcb", ".net", ".kicad_sch", ".kicad_pro"
-_READ = (_BOARD, _NETLIST)
-_ORDER = {_BOARD: 0, _NETLIST: 1, _PROJECT: 2, _SHEET: 3}
+_READ = (_BOARD, _NETLIST, _SHEET)
+_ORDER = {_BOARD: 0, _SHEET: 1, _NETLIST: 2, _PROJECT: 3}
 # Copies that editors and panel tools leave beside the design. Read when named, passed over in a folder.
 _COPY_PREFIXES = ("_autosave-", "~", "#auto_saved_files#")
 _COPY_FOLDERS = ("-backups",)
@@ -25,31 +26,39 @@ _MAX_ENTRIES = 200_000
 class Project:
     """One design to review: the file to read, and those beside it that were passed over, with the reason.
 
-    `named` says that the user named this very file, and not a folder it lies in.
+    `named` says that the user named this very file, and not a folder it lies in. `sheets` is the root sheet of
+    a board.
     """
 
     path: Path
     named: bool = True
+    sheets: Path | None = None
     passed_over: tuple[tuple[Path, str], ...] = ()
 
 
 def find_projects(paths: list[Path]) -> list[Project]:
     """The designs behind files and folders, in the order given, each once.
 
-    Files of one folder and stem are one design; its board is read, or its netlist where there is no board. A
-    file of a kind that designs do not have stands by itself, so that reading it says what is wrong with it.
+    Files of one folder and stem are one design: its board with its sheets, or its sheets alone, or its netlist
+    where there is neither. A sheet stands for the root sheets it is part of. A file of a kind that designs do
+    not have stands by itself, so that reading it says what is wrong with it.
 
     Raises:
         InputError: if a folder has no design in it.
     """
     chosen: dict[object, list[tuple[Path, bool]]] = {}
+    owners = SheetOwners()
     for path in paths:
         # Not Path.is_dir: it raises for names that the system cannot hold, and opening says that better.
         folder = os.path.isdir(path)  # noqa: PTH112 (see above)
         # A project file stands for the designs it speaks of: those of its folder.
         below = path if folder else path.parent if path.name == NAME and path.exists() else None
-        for file in _designs_below(below) if below is not None else [path]:
-            chosen.setdefault(_design_of(file), []).append((file, below is None))
+        for given in _designs_below(below) if below is not None else [path]:
+            sheet = given.suffix.lower() == _SHEET
+            if sheet and below is not None and owners.left_over(given):
+                continue
+            for file in owners.roots_of(given) if sheet else [given]:
+                chosen.setdefault(_design_of(file), []).append((file, below is None))
     return [_project(files) for files in chosen.values()]
 
 
@@ -61,21 +70,25 @@ def _design_of(file: Path) -> object:
 
 
 def _project(files: list[tuple[Path, bool]]) -> Project:
-    """One design from its files: the board first, then a netlist; a sheet or project leads to the one beside it."""
+    """One design from its files: the board first, then sheets, then a netlist."""
     unique = dict(files)
     ordered = sorted(unique, key=lambda file: _ORDER.get(file.suffix.lower(), len(_ORDER)))
     main = ordered[0]
     if main.suffix.lower() in (_SHEET, _PROJECT):
-        beside = (main.with_suffix(suffix) for suffix in _READ)
+        beside = (main.with_suffix(suffix) for suffix in _ORDER)
         main = next((file for file in beside if file.is_file()), main)
-    reasons = {_NETLIST: "the board beside it is reviewed", _SHEET: "sheets are not read yet; its board is reviewed"}
+    sheets = main.with_suffix(_SHEET) if main.suffix.lower() == _BOARD else None
+    what = "board" if main.suffix.lower() == _BOARD else "schematic"
     others = [
-        (file, reasons[file.suffix.lower()]) for file in ordered if file != main and file.suffix.lower() in reasons
+        (file, f"the {what} beside it is reviewed")
+        for file in ordered
+        if file != main and file.suffix.lower() == _NETLIST
     ]
     legacy = main.with_suffix(".sch")
     if os.path.isfile(legacy):  # noqa: PTH113 (is_file raises for names the system cannot hold)
         others.append((legacy, "a legacy text schematic; the file beside it is reviewed"))
-    return Project(main, any(unique.values()), tuple(others))
+    there = sheets is not None and os.path.isfile(sheets)  # noqa: PTH113 (the same)
+    return Project(main, any(unique.values()), sheets if there else None, tuple(others))
 
 
 def _designs_below(folder: Path) -> list[Path]:
@@ -99,8 +112,8 @@ def _designs_below(folder: Path) -> list[Path]:
         found += [file for file in files if file.is_file() and not file.is_symlink()]
     if not found:
         raise InputError(
-            "there is no board and no netlist in this folder",
-            "name a folder with a .kicad_pcb or an exported .net file",
+            "there is no board, schematic or netlist in this folder",
+            "name a folder with a .kicad_pcb, .kicad_sch or exported .net file",
             shown_path(folder),
         )
     return found

@@ -13,9 +13,10 @@ class FileKind(StrEnum):
 
     BOARD = "board"
     NETLIST = "netlist"
+    SCHEMATIC = "schematic"
 
 
-_HEADS = {"kicad_pcb": FileKind.BOARD, "export": FileKind.NETLIST}
+_HEADS = {"kicad_pcb": FileKind.BOARD, "export": FileKind.NETLIST, "kicad_sch": FileKind.SCHEMATIC}
 # First bytes of files that are often given by mistake, with what to give instead.
 _FOREIGN = (
     (b"<?xml", "this is a netlist in XML", "export the netlist in the S-expression format"),
@@ -31,17 +32,13 @@ _FOREIGN = (
     (b"%PDF", "this is a PDF document", "give the board or the netlist it was made from"),
 )
 _OTHER_HEADS = {
-    "kicad_sch": (
-        "this is a schematic sheet, which is not read yet",
-        "give the board or an exported netlist",
-    ),
     "kicad_symbol_lib": ("this is a symbol library", "give the board or an exported netlist"),
     "footprint": ("this is a single footprint", "give the board it is used on"),
     "module": ("this is a single footprint", "give the board it is used on"),
     "kicad_wks": ("this is a drawing frame", "give the board or an exported netlist"),
 }
 _LOOK = 1 << 20
-_NAME_A_DESIGN = "give a board (.kicad_pcb) or an exported netlist (.net)"
+_NAME_A_DESIGN = "give a board (.kicad_pcb), a schematic (.kicad_sch) or an exported netlist (.net)"
 
 
 def sniff(path: str, data: bytes) -> FileKind:
@@ -63,5 +60,5 @@ def sniff(path: str, data: bytes) -> FileKind:
     head = word[0].decode("latin-1") if start.startswith(b"(") and word else ""
     if head in _HEADS:
         return _HEADS[head]
-    message, next_step = _OTHER_HEADS.get(head, ("this is no board and no netlist", _NAME_A_DESIGN))
+    message, next_step = _OTHER_HEADS.get(head, ("this is no board, schematic or netlist", _NAME_A_DESIGN))
     raise error_at(path, data[:4000], 0, message, next_step)

@@ -10,7 +10,8 @@ from typing import TYPE_CHECKING
 
 import pytest
 
-from gatecheck.design.build import from_netlist
+from gatecheck.design.build import from_netlist, pins_by_net
+from gatecheck.load import load_design
 from gatecheck.parse.document import open_document
 from gatecheck.parse.netlist import NetlistFile, read_netlist
 
@@ -120,3 +121,12 @@ def test_exported_netlists_part_for_part_and_pin_for_pin(exported: Path, name: s
         (name, node.reference, node.pin) for name, nodes in netlist.nets.items() for node in nodes
     }
     assert len(netlist.nets) > 0
+
+
+@pytest.mark.parametrize("release", [6, 8, 9])
+def test_drawing_of_an_exported_netlist_has_every_pin_in_the_same_company(exported: Path, release: int) -> None:
+    def company(suffix: str) -> set[frozenset[tuple[str, str]]]:
+        nets = pins_by_net(load_design(exported / f"kicad{release}_test{suffix}").design)
+        return {frozenset(pins) for pins in nets.values()}
+
+    assert company(".kicad_sch") == company(".net")
