@@ -22,6 +22,9 @@ if TYPE_CHECKING:
     from gatecheck.design.model import Design
     from gatecheck.parse.board import BoardFile
     from gatecheck.parse.project import Project
+    from gatecheck.parse.project_file import ProjectFile
+
+_MOST_PROJECT_BYTES = 8 * 1024 * 1024  # of a project file; three hundred times the largest seen, our choice
 
 
 @dataclass(frozen=True, slots=True)
@@ -130,8 +133,21 @@ def _schematic(
     hierarchy = read_hierarchy(document, fetch)
     if not any(file.symbols for file in hierarchy.files.values()) and not hierarchy.troubles:
         raise InputError("no part is drawn in this schematic", "give a schematic with symbols", document.path)
-    design, paths = from_sheets(hierarchy)
-    return design, paths, tuple(sources), documents, tuple(hierarchy.troubles)
+    project, troubles = _project_file(path.with_suffix(".kicad_pro"))
+    design, paths = from_sheets(hierarchy, project)
+    return design, paths, tuple(sources), documents, (*hierarchy.troubles, *troubles)
+
+
+def _project_file(path: Path) -> tuple[ProjectFile, tuple[InputError, ...]]:
+    """The project file beside a root sheet, where there is one."""
+    from gatecheck.parse.project_file import ProjectFile, read_project_file  # noqa: PLC0415 (only what is needed)
+
+    if not path.is_file():
+        return ProjectFile(), ()
+    try:
+        return read_project_file(shown_path(path), read_bytes(path, max_bytes=_MOST_PROJECT_BYTES)), ()
+    except InputError as why:
+        return ProjectFile(), (why,)
 
 
 def _repository(folder: Path) -> Path | None:

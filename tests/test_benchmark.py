@@ -12,6 +12,7 @@ from pathlib import Path
 
 import pytest
 
+from tests import sheets
 from tests.sample_maker.tile import benchmark_board
 
 pytestmark = pytest.mark.alone
@@ -134,3 +135,21 @@ def test_growth_is_linear(installed: Path, tmp_path: Path) -> None:
     )
     print(f"start {start:.2f} s, 5 MB {times[0]:.2f} s, 20 MB {times[1]:.2f} s")
     assert times[1] - start <= 5 * max(times[0] - start, 0.05)
+
+
+def test_a_large_schematic_is_read_in_a_second_and_a_half(installed: Path, tmp_path: Path) -> None:
+    """7000 pins on 30 sheets; a hook runs at every commit, and people wait for it."""
+    for number in range(30):
+        items = []
+        for k in range(117):
+            x, y = k % 12 * 20, k // 12 * 20
+            items += [sheets.symbol("L", f"R{number * 1000 + k}", f"{x} {y}"), sheets.label(f"N{k}", f"{x + 10} {y}")]
+            items += [sheets.wire(f"{x + 5} {y}", f"{x + 15} {y}"), sheets.wire(f"{x} {y - 10}", f"{x + 8} {y - 10}")]
+        (tmp_path / f"s{number}.kicad_sch").write_text(sheets.file(*items))
+    root = tmp_path / "root.kicad_sch"
+    root.write_text(sheets.file(*(sheets.sheet(f"S{number}", f"s{number}.kicad_sch") for number in range(30))))
+    done = subprocess.run([installed / "gatecheck", "nets", root], capture_output=True, text=True, check=True)
+    assert len(re.findall(r"\bR\d+\.\d|\bR\d+ pin|R\d+", done.stdout)) >= 7000
+    best = min(seconds(installed / "gatecheck", "nets", root) for _ in range(3))
+    print(f"7020 pins on 30 sheets: {best:.2f} s")
+    assert best <= 1.5

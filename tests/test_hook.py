@@ -11,6 +11,9 @@ from pathlib import Path
 import pytest
 import yaml
 
+from tests import sheets
+from tests.rules.project.test_board_out_of_step import PARTS, drawing
+
 ROOT = Path(__file__).parent.parent
 SAMPLES = ROOT / "sample_boards"
 pytestmark = pytest.mark.alone
@@ -83,6 +86,23 @@ def test_blocks_on_the_faulty_board_once_though_two_of_its_files_are_staged(repo
     assert "Failed" in done.stdout
     assert done.stdout.count("bead-distance") == 1
     assert "18.9 mm, at most 5 mm" in done.stdout
+
+
+def test_blocks_a_commit_that_stages_only_a_sheet_of_the_project(repository: Path, hook: Path) -> None:
+    (repository / "gatecheck.yaml").write_text("bead_policy: always\n")
+    (repository / "drive.kicad_pro").write_text("{}")
+    (repository / "drive.kicad_sch").write_text(sheets.file(sheets.sheet("Leg", "sheets/leg.kicad_sch")))
+    (repository / "sheets").mkdir()
+    leaf = repository / "sheets" / "leg.kicad_sch"
+    leaf.write_text(drawing(PARTS | {"FB1": ("60R@100MHz 3A", "", PARTS["R1"][2])}))
+    git(repository, "add", "-A")
+    git(repository, "commit", "-qm", "a project")
+    leaf.write_text(drawing(PARTS))
+    git(repository, "add", "-A")
+    done = try_hook(repository, hook)
+    assert done.returncode == 1, done.stdout + done.stderr
+    assert "drive.kicad_sch" in done.stdout
+    assert done.stdout.count("series-bead") == 1
 
 
 def test_is_not_asked_about_other_files(repository: Path, hook: Path) -> None:

@@ -9,6 +9,7 @@ from gatecheck.design.build import identities, natural
 from gatecheck.design.model import Part, Pin, Place, joined
 from gatecheck.design.net_names import NetPin, net_name, told_apart, unit_letter
 from gatecheck.design.wiring import wire
+from gatecheck.parse.project_file import ProjectFile, resolved
 
 if TYPE_CHECKING:
     from collections.abc import Hashable, Mapping, Sequence
@@ -18,13 +19,14 @@ if TYPE_CHECKING:
     from gatecheck.parse.sheets import Hierarchy
 
 
-def from_sheets(hierarchy: Hierarchy) -> tuple[Design, Mapping[str, str]]:
+def from_sheets(hierarchy: Hierarchy, project: ProjectFile | None = None) -> tuple[Design, Mapping[str, str]]:
     """The Design of a schematic alone, and the part that each symbol's identifier path belongs to."""
-    wiring = wire(hierarchy)
+    project = project or ProjectFile()
+    wiring = wire(hierarchy, project.bus_aliases)
     groups = _parts(wiring)
     nets = _nets(wiring, groups, hierarchy.root.version)
     names = identities(symbols[0].reference for symbols in groups)
-    parts = {name: _part(name, symbols, wiring, nets) for name, symbols in zip(names, groups, strict=True)}
+    parts = {name: _part(name, symbols, wiring, nets, project) for name, symbols in zip(names, groups, strict=True)}
     paths = {_path(symbol): name for name, symbols in zip(names, groups, strict=True) for symbol in symbols}
     return joined(hierarchy.root.document.path, "schematic", parts), paths
 
@@ -66,9 +68,16 @@ def _nets(wiring: Wiring, groups: Sequence[Sequence[PlacedSymbol]], version: int
     return dict(zip(pins, told_apart(names), strict=True))
 
 
-def _part(name: str, symbols: Sequence[PlacedSymbol], wiring: Wiring, nets: Mapping[Hashable, str]) -> Part:
+def _part(
+    name: str,
+    symbols: Sequence[PlacedSymbol],
+    wiring: Wiring,
+    nets: Mapping[Hashable, str],
+    project: ProjectFile,
+) -> Part:
     first = min(symbols, key=lambda symbol: (symbol.unit, symbol.use.index, symbol.form.start))
-    fields = dict(first.fields)
+    own = {key.upper(): value for key, value in first.fields.items()} | dict(first.fields)
+    fields = {key: resolved(value, own, project.variables) for key, value in first.fields.items()}
     library = first.library.fields
     return Part(
         id=name,

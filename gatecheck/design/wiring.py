@@ -87,10 +87,12 @@ class Wiring:
         self.namings.append((joint, naming))
 
 
-def wire(hierarchy: Hierarchy) -> Wiring:
-    """Join everything that the drawing joins."""
+def wire(hierarchy: Hierarchy, bus_aliases: Mapping[str, Sequence[str]]) -> Wiring:
+    """Join everything that the drawing joins. Aliases of buses stand in the project file or in any sheet."""
     wiring = Wiring()
-    aliases = {name: members for file in hierarchy.files.values() for name, members in file.bus_aliases.items()}
+    aliases = dict(bus_aliases) | {
+        name: members for file in hierarchy.files.values() for name, members in file.bus_aliases.items()
+    }
     nets = {path: sheet_nets(file, aliases) for path, file in hierarchy.files.items()}
     below = {(use.parent.index, use.symbol.start): use for use in hierarchy.uses if use.parent and use.symbol}
     for use in hierarchy.uses:

@@ -16,9 +16,10 @@ Parts = dict[str, tuple[str, str, dict[str, tuple[str, str]]]]
 
 # A gate drive of a board and the same as a drawing: driver, resistor, transistor, and a lamp that is no gate's.
 PARTS: Parts = {
-    "Q1": ("IRF", "Package_TO_SOT_THT:TO-247-3", {"1": ("G", "/GATE"), "2": ("D", "VBUS"), "3": ("S", "GND")}),
+    "Q1": ("IRF", "Package_TO_SOT_THT:TO-247-3", {"1": ("G", "/GATE"), "2": ("D", "/SW"), "3": ("S", "GND")}),
     "U1": ("half-bridge gate driver", "", {"1": ("HO", "/OUT"), "2": ("VSS", "GND"), "3": ("VDD", "+12V")}),
     "R1": ("10R", "", {"1": ("", "/OUT"), "2": ("", "/GATE")}),
+    "L1": ("10u", "", {"1": ("", "VBUS"), "2": ("", "/SW")}),
     "R9": ("1k", "", {"1": ("", "+12V"), "2": ("", "/LED")}),
     "D9": ("LED", "", {"1": ("K", "GND"), "2": ("A", "/LED")}),
 }
@@ -40,13 +41,14 @@ def board(parts: Parts) -> str:
 
 def drawing(parts: Parts) -> str:
     library, items = "", []
-    for i, (reference, (value, _, pins)) in enumerate(parts.items()):
+    for i, (reference, (value, package, pins)) in enumerate(parts.items()):
         drawn = "".join(
             f'(pin passive line (at {10 * k} 0 0) (name "{function or "~"}") (number "{number}"))'
             for k, (number, (function, _)) in enumerate(pins.items())
         )
         library += f'(symbol "X{i}" (symbol "X{i}_1_1" {drawn}))'
-        items.append(symbol(f"X{i}", reference, f"0 {10 * i}", value=value))
+        housed = f'(property "Footprint" "{package}")'
+        items.append(symbol(f"X{i}", reference, f"0 {10 * i}", housed, value=value))
         items += [
             label(net.lstrip("/"), f"{10 * k} {10 * i}", "label" if net.startswith("/") else "global_label")
             for k, (_, net) in enumerate(pins.values())
