@@ -101,7 +101,7 @@ def test_blocks_a_commit_that_stages_only_a_sheet_of_the_project(repository: Pat
     git(repository, "add", "-A")
     done = try_hook(repository, hook)
     assert done.returncode == 1, done.stdout + done.stderr
-    assert "drive.kicad_sch" in done.stdout
+    assert "sheets/leg.kicad_sch" in done.stdout
     assert done.stdout.count("series-bead") == 1
 
 
