@@ -122,6 +122,9 @@ def _parser() -> argparse.ArgumentParser:
     )
     shared.add_argument("-q", "--quiet", action="store_true", help="review: only what fails; nothing when all is well")
     shared.add_argument("--color", choices=("auto", "always", "never"), default="auto", help="NO_COLOR is honoured too")
+    shared.add_argument(
+        "--allow-outside", action="store_true", help="read sheets that lie outside the repository as well"
+    )
     shared.add_argument("-v", "--verbose", action="store_true", help="show the trace of a fault")
     paths = {"metavar": "PATH", "nargs": "+", "type": Path}
     for name, run, what in (
@@ -129,10 +132,10 @@ def _parser() -> argparse.ArgumentParser:
         ("gates", _gates, "draw the gate networks, and say why each transistor has its role"),
     ):
         verb = verbs.add_parser(name, parents=[shared], help=what, description=what, allow_abbrev=False)
-        verb.add_argument("paths", help="a board, a netlist, or a folder with designs", **paths)  # type: ignore[arg-type]
+        verb.add_argument("paths", help="a board, schematic, netlist, project file, or a folder", **paths)  # type: ignore[arg-type]
         verb.set_defaults(run=run)
     nets = verbs.add_parser("nets", parents=[shared], help="the connectivity as read from one file", allow_abbrev=False)
-    nets.add_argument("file", metavar="FILE", type=Path, help="a board or a netlist")
+    nets.add_argument("file", metavar="FILE", type=Path, help="a board, schematic or netlist")
     nets.set_defaults(run=_nets)
     rules = verbs.add_parser(
         "rules", parents=[shared], help="the rules; one rule's reason, limits, sources", allow_abbrev=False
@@ -146,7 +149,9 @@ def _review(options: argparse.Namespace) -> int:
     from gatecheck.finding import Level  # noqa: PLC0415 (after --help)
     from gatecheck.review import review  # noqa: PLC0415 (the same)
 
-    report = review(options.paths, block_at=Level(options.block_at) if options.block_at else None)
+    report = review(
+        options.paths, block_at=Level(options.block_at) if options.block_at else None, outside=options.allow_outside
+    )
     if options.format == "json":
         from gatecheck.report.to_json import report_json  # noqa: PLC0415 (only what is asked for)
 
@@ -161,7 +166,7 @@ def _review(options: argparse.Namespace) -> int:
 def _gates(options: argparse.Namespace) -> int:
     from gatecheck.review import review  # noqa: PLC0415 (after --help)
 
-    report = review(options.paths, with_rules=False)
+    report = review(options.paths, with_rules=False, outside=options.allow_outside)
     if options.format == "json":
         from gatecheck.report.to_json import report_json  # noqa: PLC0415 (only what is asked for)
 
@@ -177,7 +182,7 @@ def _nets(options: argparse.Namespace) -> int:
     from gatecheck.design.build import pins_by_net  # noqa: PLC0415 (after --help)
     from gatecheck.load import load_design  # noqa: PLC0415 (the same)
 
-    loaded = load_design(options.file)
+    loaded = load_design(options.file, outside=options.allow_outside)
     nets = pins_by_net(loaded.design)
     if options.format == "json":
         from gatecheck.report.to_json import nets_json  # noqa: PLC0415 (only what is asked for)

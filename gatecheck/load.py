@@ -47,18 +47,18 @@ class Loaded:
         return self.sources[0]
 
 
-def load_project(project: Project) -> Loaded:
+def load_project(project: Project, *, outside: bool = False) -> Loaded:
     """Read a design with all its files: a board is joined with its schematic.
 
     Raises:
         InputError: if the main file cannot be read. Of a schematic beside a board, that is a trouble.
     """
-    loaded = load_design(project.path)
+    loaded = load_design(project.path, outside=outside)
     if project.sheets is None or loaded.board is None:
         return loaded
     try:
         document, source = _opened(project.sheets)
-        drawn, paths, sources, documents, troubles = _schematic(project.sheets, document, source)
+        drawn, paths, sources, documents, troubles = _schematic(project.sheets, document, source, outside=outside)
     except InputError as why:
         return replace(loaded, troubles=(*loaded.troubles, why))
     from gatecheck.design.join import join_designs  # noqa: PLC0415 (only what is needed)
@@ -75,8 +75,8 @@ def load_project(project: Project) -> Loaded:
     )
 
 
-def load_design(path: Path) -> Loaded:
-    """Read one board, schematic or netlist.
+def load_design(path: Path, *, outside: bool = False) -> Loaded:
+    """Read one board, schematic or netlist; `outside` lets sheets lie outside the repository.
 
     Raises:
         InputError: if it cannot be read at all.
@@ -88,7 +88,7 @@ def load_design(path: Path) -> Loaded:
         board = read_board(document)
         return Loaded((source,), {document.path: document}, from_board(board), board.troubles, board)
     if source.kind == FileKind.SCHEMATIC.value:
-        design, _, sources, documents, troubles = _schematic(path, document, source)
+        design, _, sources, documents, troubles = _schematic(path, document, source, outside=outside)
         return Loaded(sources, documents, design, troubles)
     from gatecheck.parse.netlist import read_netlist  # noqa: PLC0415 (the same)
 
@@ -104,7 +104,7 @@ def _opened(path: Path) -> tuple[Document, InputFile]:
 
 
 def _schematic(
-    path: Path, document: Document, source: InputFile
+    path: Path, document: Document, source: InputFile, *, outside: bool
 ) -> tuple[Design, Mapping[str, str], tuple[InputFile, ...], Mapping[str, Document], tuple[InputError, ...]]:
     """A schematic with all its sheets: design, part of each symbol path, files, documents and troubles.
 
@@ -119,8 +119,8 @@ def _schematic(
 
     def fetch(above: str, name: str) -> Document:
         file = places[above].parent / name.replace("\\", "/")
-        if not name or not file.resolve().is_relative_to(reach):
-            raise InputError("this sheet lies outside the project", "move its file into the project", above)
+        if not name or not (outside or file.resolve().is_relative_to(reach)):
+            raise InputError("this sheet lies outside the project", "move its file there, or --allow-outside", above)
         shown = shown_path(file.parent.resolve() / file.name) if ".." in file.parts else shown_path(file)
         if shown not in documents:
             below, found = _opened(file)

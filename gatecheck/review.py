@@ -37,11 +37,13 @@ class _Gathered:
     blocked: bool = False
 
 
-def review(paths: Iterable[Path], *, with_rules: bool = True, block_at: Level | None = None) -> Report:
+def review(
+    paths: Iterable[Path], *, with_rules: bool = True, block_at: Level | None = None, outside: bool = False
+) -> Report:
     """Review the designs behind some paths.
 
     A file that cannot be read is in the report's `unread` and stops nothing else. `block_at` overrides the
-    level that project files state.
+    level that project files state; `outside` lets sheets lie outside the repository.
 
     Raises:
         SettingsError: if a project file has mistakes: nothing is judged by half of a project's word.
@@ -49,7 +51,7 @@ def review(paths: Iterable[Path], *, with_rules: bool = True, block_at: Level | 
     found = _Gathered()
     for project in _projects(paths, found):
         try:
-            loaded = load_project(project)
+            loaded = load_project(project, outside=outside)
             settings, settings_file = load_settings(project.path)
         except InputError as why:
             if project.named or project.path.suffix != ".net":
