@@ -119,7 +119,7 @@ def _schematic(
 
     def fetch(above: str, name: str) -> Document:
         file = places[above].parent / name.replace("\\", "/")
-        if not name or not (outside or file.resolve().is_relative_to(reach)):
+        if not name or "\0" in name or not (outside or file.resolve().is_relative_to(reach)):
             raise InputError("this sheet lies outside the project", "move its file there, or --allow-outside", above)
         shown = shown_path(file.parent.resolve() / file.name) if ".." in file.parts else shown_path(file)
         if shown not in documents:

@@ -21,6 +21,7 @@ if TYPE_CHECKING:
 # Our choice: designs of thirty sheets are large; bounds work on hostile files.
 _MOST_USES = 2000
 _MOST_DEPTH = 30
+_MOST_DRAWN = 300_000  # symbols and labels, counted once per use
 
 
 @dataclass(frozen=True, slots=True)
@@ -48,6 +49,12 @@ class Hierarchy:
     uses: list[SheetUse] = field(default_factory=list)
     files: dict[str, SheetFile] = field(default_factory=dict)
     troubles: list[InputError] = field(default_factory=list)
+    drawn: int = 0
+
+    @property
+    def full(self) -> bool:
+        """Is it as large as a design may be?"""
+        return len(self.uses) >= _MOST_USES or self.drawn > _MOST_DRAWN
 
     @property
     def root(self) -> SheetFile:
@@ -72,9 +79,11 @@ def read_hierarchy(root: Document, fetch: Callable[[str, str], Document]) -> Hie
 
 def _use(found: Hierarchy, fetch: Callable[[str, str], Document], use: SheetUse, above: tuple[str, ...]) -> None:
     found.uses.append(use)
+    found.drawn += len(use.file.symbols) + len(use.file.labels)
     for symbol in use.file.sheets:
-        if len(found.uses) >= _MOST_USES:
-            _trouble(found, use, symbol, InputError(f"more than {_MOST_USES} sheets", "split the design", ""))
+        if found.full:
+            message = f"more than {_MOST_USES} sheets, or {_MOST_DRAWN} symbols and labels on them"
+            _trouble(found, use, symbol, InputError(message, "split the design", ""))
             return
         try:
             below = _below(fetch, use, symbol, above)

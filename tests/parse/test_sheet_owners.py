@@ -93,3 +93,11 @@ def test_copies_of_editors_are_no_projects(project: Path) -> None:
     (project / "drive-backups").mkdir()
     (project / "drive-backups" / "x.kicad_sch").write_text(LEAF)
     assert json.dumps(len(find_projects([project]))) == "1"
+
+
+@pytest.mark.parametrize("name", ["a\\x00b.kicad_sch", "x" * 5000, "a\\nb", "", "leg", "."])
+def test_odd_names_of_sheets_are_one_trouble(project: Path, name: str) -> None:
+    (project / "drive.kicad_sch").write_text(file(sheet("A", name), symbol("P", "P1", "0 0")))
+    report = review([project / "drive.kicad_sch"])
+    assert len(report.unread) == 1
+    assert report.unread[0].line > 0
