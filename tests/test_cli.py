@@ -182,7 +182,7 @@ def test_a_netlist_named_alone_is_read_itself() -> None:
 
 def test_a_project_file_stands_for_the_designs_of_its_folder() -> None:
     report = json.loads(run("review", SAMPLES / "half_bridge" / "gatecheck.yaml", "--format", "json")[1])
-    assert [entry["kind"] for entry in report["inputs"]] == ["board", "settings"]
+    assert [entry["kind"] for entry in report["inputs"]] == ["board", "schematic", "settings"]
 
 
 def test_a_report_is_never_written_over_a_design(tmp_path: Path) -> None:
@@ -205,7 +205,7 @@ def test_output_follows_links_and_writes_into_pipes(tmp_path: Path) -> None:
 def test_the_same_board_by_three_spellings_is_reviewed_once() -> None:
     spellings = [BOARD, BOARD.resolve(), BOARD.parent / ".." / BOARD.parent.name / BOARD.name]
     report = json.loads(run("review", *spellings, "--format", "json")[1])
-    assert [entry["kind"] for entry in report["inputs"]] == ["board", "settings"]
+    assert [entry["kind"] for entry in report["inputs"]] == ["board", "schematic", "settings"]
 
 
 @pytest.mark.parametrize("other", ["half_bridge.missing", "half_bridge.txt", "gone.net"])

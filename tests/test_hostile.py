@@ -20,6 +20,7 @@ from gatecheck.cli import main
 SAMPLES = Path("sample_boards")
 BOARD = SAMPLES / "half_bridge" / "half_bridge.kicad_pcb"
 NETLIST = SAMPLES / "half_bridge" / "half_bridge.net"
+SHEET = SAMPLES / "half_bridge" / "half_bridge.kicad_sch"
 HEAD = (
     '(kicad_pcb (version 20241229) (generator "x") (layers (0 "F.Cu" signal) (2 "B.Cu" signal))'
     ' (net 0 "") (net 1 "A")\n'
@@ -243,7 +244,9 @@ def mutated(data: bytes, rng: random.Random) -> bytes:
     return data
 
 
-@pytest.mark.parametrize("sample", [BOARD, NETLIST, SAMPLES / "half_bridge_v10" / "half_bridge.kicad_pcb"], ids=str)
+@pytest.mark.parametrize(
+    "sample", [BOARD, NETLIST, SAMPLES / "half_bridge_v10" / "half_bridge.kicad_pcb", SHEET], ids=str
+)
 def test_mutations_of_the_samples_never_end_in_a_traceback(tmp_path: Path, sample: Path) -> None:
     rng, data = random.Random(20260101), sample.read_bytes()  # noqa: S311 (no secret)
     path = tmp_path / f"m{sample.suffix}"

@@ -54,8 +54,15 @@ def test_files_and_functions_stay_small() -> None:
 
 
 OPENING = {"open", "read_text", "read_bytes", "write_text", "write_bytes", "fdopen"}
-# The catalogue reads its own data beside it; loading a design goes through files.py under the same name.
-MAY_OPEN = {"gatecheck/files.py", "gatecheck/catalogue/load.py", "gatecheck/load.py", "gatecheck/cli.py"}
+# The catalogue reads its own data beside it; loading a design, and looking for the owner of a sheet, go
+# through files.py under the same name.
+MAY_OPEN = {
+    "gatecheck/files.py",
+    "gatecheck/catalogue/load.py",
+    "gatecheck/load.py",
+    "gatecheck/parse/sheet_owners.py",
+    "gatecheck/cli.py",
+}
 
 
 def test_only_one_module_opens_files_and_one_prints() -> None:

@@ -69,7 +69,7 @@ def test_committed_files_are_what_the_maker_writes(made: dict[str, str]) -> None
     stored = {
         path.relative_to(SAMPLES).as_posix(): path.read_bytes().decode()
         for path in SAMPLES.rglob("*")
-        if path.suffix in {".kicad_pcb", ".net"}
+        if path.suffix in {".kicad_pcb", ".net", ".kicad_sch", ".kicad_pro"}
     }
     for name, text in made.items():
         # the geometry library may round curves differently in another release: fills are compared by area
