@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 import hashlib
+import os
 from dataclasses import dataclass, replace
 from typing import TYPE_CHECKING
 
@@ -142,7 +143,7 @@ def _project_file(path: Path) -> tuple[ProjectFile, tuple[InputError, ...]]:
     """The project file beside a root sheet, where there is one."""
     from gatecheck.parse.project_file import ProjectFile, read_project_file  # noqa: PLC0415 (only what is needed)
 
-    if not path.is_file():
+    if not os.path.isfile(path):  # noqa: PTH113 (is_file raises for odd names)
         return ProjectFile(), ()
     try:
         return read_project_file(shown_path(path), read_bytes(path, max_bytes=_MOST_PROJECT_BYTES)), ()

@@ -60,7 +60,7 @@ def sheet(name: str, file: str, *pins: tuple[str, str]) -> str:
 
 
 def file(*items: str, version: int = 20250114) -> str:
-    return f'(kicad_sch (version {version}) (uuid "root") (lib_symbols {LIBRARY}) {" ".join(items)})'
+    return f'(kicad_sch (version {version}) (uuid "top") (lib_symbols {LIBRARY}) {" ".join(items)})'
 
 
 def hierarchy(root: str, others: Mapping[str, str] | None = None) -> Hierarchy:

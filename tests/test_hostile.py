@@ -262,3 +262,9 @@ def test_mutations_of_the_samples_never_end_in_a_traceback(tmp_path: Path, sampl
             assert all(entry["message"] for entry in report["unread"])
             assert err
     assert {0, 3} <= codes, "the mutations reach both ends"
+
+
+@pytest.mark.parametrize("suffix", [".kicad_sch", ".kicad_pcb", ".kicad_pro", ".net", ".sch"])
+def test_a_name_that_no_system_holds_is_one_error(suffix: str) -> None:
+    code, _, err = run("review", Path("x" * 5000 + suffix))
+    assert (code, "cannot be opened" in err) == (3, True)

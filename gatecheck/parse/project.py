@@ -76,7 +76,7 @@ def _project(files: list[tuple[Path, bool]]) -> Project:
     main = ordered[0]
     if main.suffix.lower() in (_SHEET, _PROJECT):
         beside = (main.with_suffix(suffix) for suffix in _ORDER)
-        main = next((file for file in beside if file.is_file()), main)
+        main = next((file for file in beside if os.path.isfile(file)), main)  # noqa: PTH113 (is_file raises for odd names)
     sheets = main.with_suffix(_SHEET) if main.suffix.lower() == _BOARD else None
     what = "board" if main.suffix.lower() == _BOARD else "schematic"
     others = [

@@ -26,7 +26,7 @@ _MOST_DRAWN = 300_000  # symbols and labels, counted once per use
 
 @dataclass(frozen=True, slots=True)
 class SheetUse:
-    """One drawing of a sheet file. `path` is in identifiers (`/root/S1`), `name` as people read it (`/Leg A/`)."""
+    """One drawing of a sheet file. `path` is in identifiers (`/top/S1`), `name` as people read it (`/Leg A/`)."""
 
     index: int
     file: SheetFile

@@ -225,7 +225,9 @@ def test_units_of_one_reference_are_one_part() -> None:
 
 
 def test_each_path_has_its_own_references() -> None:
-    paths = '(instances (project "p" (path "/root/S" (reference "R1") (unit 1)) (path "/root/T" (reference "R2") (unit 1))))'
+    paths = (
+        '(instances (project "p" (path "/top/S" (reference "R1") (unit 1)) (path "/top/T" (reference "R2") (unit 1))))'
+    )
     below = {"r.kicad_sch": file(symbol("P", "R?", "0 0", paths, uuid="sym"))}
     found = design(file(sheet("S", "r.kicad_sch"), sheet("T", "r.kicad_sch")), below)
     assert {part.reference: part.symbol_path for part in found.parts.values()} == {"R1": "/S/sym", "R2": "/T/sym"}

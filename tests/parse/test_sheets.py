@@ -13,9 +13,9 @@ LEAF = file(symbol("P", "P1", "0 0"))
 def test_paths_and_names_of_sheets() -> None:
     found = hierarchy(file(sheet("A/B", "x")), {"x": file(sheet("Sub", "y")), "y": LEAF})
     assert [(use.path, use.name, use.below_root) for use in found.uses] == [
-        ("/root", "/", ""),
-        ("/root/A/B", "/A{slash}B/", "/A/B"),
-        ("/root/A/B/Sub", "/A{slash}B/Sub/", "/A/B/Sub"),
+        ("/top", "/", ""),
+        ("/top/A/B", "/A{slash}B/", "/A/B"),
+        ("/top/A/B/Sub", "/A{slash}B/Sub/", "/A/B/Sub"),
     ]
 
 
