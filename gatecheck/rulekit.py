@@ -54,7 +54,6 @@ __all__ = [
 ]
 
 EDGES = ("on", "off")
-_WHOLE = "the board"  # subject of what is said of the whole design
 
 
 @dataclass(frozen=True, slots=True)
@@ -251,6 +250,11 @@ class Design:
         """A part by its id."""
         return self._networks.design.parts[key]
 
+    @property
+    def name(self) -> str:
+        """What the design is called: its main file, without the folder."""
+        return self._networks.design.source.rpartition("/")[2]
+
     def at_a_gate(self, step: OutOfStep) -> bool:
         """Does a difference touch what stands between a driver and a gate?"""
         nets = {gate.network.transistor.gate_net for gate in self.gates}
@@ -280,7 +284,7 @@ class Design:
             rule=rule.id,
             verdict=say.verdict,
             level=level,
-            subject=gate.name if gate is not None else _WHOLE,
+            subject=gate.name if gate is not None else self.name,
             message=message,
             rests_on=rests_on,
             fingerprint=fingerprint(rule.id, *self._identity(gate), say.edge or ""),
@@ -296,7 +300,7 @@ class Design:
     def _identity(self, gate: Gate | None) -> tuple[str, ...]:
         """What tells a subject from all others, whatever else changes."""
         if gate is None:
-            return ("",)
+            return (self.name,)
         part = self.part(gate.part)
         # Panels repeat symbols; the part's id tells the copies apart where the symbol does not.
         identity = f"{part.symbol_path} {part.id}" if part.symbol_path else part.id

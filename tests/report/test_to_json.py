@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 import json
+import shutil
 from typing import Any
 
 from tests.test_hostile import BOARD, NETLIST, SAMPLES, run
@@ -77,7 +78,7 @@ def test_ids_and_fingerprints_are_unique_and_survive_moved_parts(tmp_path: Any) 
     assert len(ids) == len(set(ids))
     prints = [finding["fingerprint"] for finding in found["findings"]]
     assert len(prints) == len(set(prints))
-    moved = tmp_path / "half_bridge.kicad_pcb"
+    moved = shutil.copytree(BOARD.parent, tmp_path / "moved") / BOARD.name
     moved.write_text("\n\n" + BOARD.read_text().replace("\t\t(at 4", "\t\t(at 5"))
     assert [finding["fingerprint"] for finding in report(moved)["findings"]] == prints
 

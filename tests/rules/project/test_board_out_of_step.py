@@ -63,7 +63,9 @@ def verdicts(folder: Path, drawn: Parts | None) -> list[tuple[Verdict, Level, st
     found = review([folder / "x.kicad_pcb"])
     assert not found.unread
     assert sum(len(one.networks.gates) for one in found.designs) == 1
-    return [(f.verdict, f.level, f.message) for f in found.findings if f.rule == "board-out-of-step"]
+    mine = [f for f in found.findings if f.rule == "board-out-of-step"]
+    assert all(f.subject == "x.kicad_pcb" for f in mine)
+    return [(f.verdict, f.level, f.message) for f in mine]
 
 
 def changed(reference: str, number: str, net: str) -> Parts:
