@@ -146,11 +146,11 @@ def _finding(finding: Finding) -> list[_Line]:
     lines: list[_Line] = [
         [
             (f"{word:<10} ", style),
-            (f"{finding.rule:<16} ", ""),
+            (f"{finding.rule:<17} ", ""),
             (f"{subjects}{edge}: {safe(finding.message)}", ""),
         ]
     ]
-    pad = " " * 28
+    pad = " " * 29
     if finding.value is not None and finding.limit is not None:
         lines.append([(f"{pad}{_measure(finding.value, finding.limit)}", "")])
     if finding.verdict is Verdict.FAIL:
