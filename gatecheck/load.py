@@ -32,7 +32,8 @@ _MOST_PROJECT_BYTES = 8 * 1024 * 1024  # of a project file; three hundred times 
 class Loaded:
     """A design with the files it came from, the main one first.
 
-    `troubles` are forms that could not be read; `out_of_step` is where board and schematic differ.
+    `troubles` are forms that could not be read; `out_of_step` is where board and schematic differ; `variants`
+    are named ones, of which none was read.
     """
 
     sources: tuple[InputFile, ...]
@@ -41,6 +42,7 @@ class Loaded:
     troubles: tuple[InputError, ...]
     board: BoardFile | None = None
     out_of_step: OutOfStep | None = None
+    variants: tuple[str, ...] = ()
 
     @property
     def source(self) -> InputFile:
@@ -59,20 +61,21 @@ def load_project(project: Project, *, outside: bool = False) -> Loaded:
         return loaded
     try:
         document, source = _opened(project.sheets)
-        drawn, paths, sources, documents, troubles = _schematic(project.sheets, document, source, outside=outside)
+        drawn, paths = _schematic(project.sheets, document, source, outside=outside)
     except InputError as why:
         return replace(loaded, troubles=(*loaded.troubles, why))
     from gatecheck.design.join import join_designs  # noqa: PLC0415 (only what is needed)
 
-    design, step = join_designs(loaded.design, drawn, paths)
+    design, step = join_designs(loaded.design, drawn.design, paths)
     return Loaded(
-        (*loaded.sources, *sources),
-        {**loaded.documents, **documents},
+        (*loaded.sources, *drawn.sources),
+        {**loaded.documents, **drawn.documents},
         design,
-        (*loaded.troubles, *troubles),
+        (*loaded.troubles, *drawn.troubles),
         loaded.board,
         # Half a schematic differs from any board; what is missing has been said.
-        step if not troubles else None,
+        step if not drawn.troubles else None,
+        drawn.variants,
     )
 
 
@@ -89,8 +92,7 @@ def load_design(path: Path, *, outside: bool = False) -> Loaded:
         board = read_board(document)
         return Loaded((source,), {document.path: document}, from_board(board), board.troubles, board)
     if source.kind == FileKind.SCHEMATIC.value:
-        design, _, sources, documents, troubles = _schematic(path, document, source, outside=outside)
-        return Loaded(sources, documents, design, troubles)
+        return _schematic(path, document, source, outside=outside)[0]
     from gatecheck.parse.netlist import read_netlist  # noqa: PLC0415 (the same)
 
     netlist = read_netlist(document)
@@ -104,10 +106,8 @@ def _opened(path: Path) -> tuple[Document, InputFile]:
     return open_document(shown, data), InputFile(shown, kind.value, hashlib.sha256(data).hexdigest())
 
 
-def _schematic(
-    path: Path, document: Document, source: InputFile, *, outside: bool
-) -> tuple[Design, Mapping[str, str], tuple[InputFile, ...], Mapping[str, Document], tuple[InputError, ...]]:
-    """A schematic with all its sheets: design, part of each symbol path, files, documents and troubles.
+def _schematic(path: Path, document: Document, source: InputFile, *, outside: bool) -> tuple[Loaded, Mapping[str, str]]:
+    """A schematic with all its sheets, and the part that each symbol path belongs to.
 
     Raises:
         InputError: if there is no symbol on any sheet.
@@ -136,7 +136,8 @@ def _schematic(
         raise InputError("no part is drawn in this schematic", "give a schematic with symbols", document.path)
     project, troubles = _project_file(path.with_suffix(".kicad_pro"))
     design, paths = from_sheets(hierarchy, project)
-    return design, paths, tuple(sources), documents, (*hierarchy.troubles, *troubles)
+    every = (*hierarchy.troubles, *troubles)
+    return Loaded(tuple(sources), documents, design, every, variants=tuple(hierarchy.variants)), paths
 
 
 def _project_file(path: Path) -> tuple[ProjectFile, tuple[InputError, ...]]:

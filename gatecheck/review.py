@@ -104,6 +104,9 @@ def _review_one(
     found.not_judged += [
         NotJudged(None, name, note, "") for name, document in loaded.documents.items() for note in document.notes
     ]
+    if loaded.variants:
+        names = " ".join(loaded.variants[:_MAX_TROUBLES])
+        found.not_judged.append(NotJudged(None, path, f"variants {names}: the design without them is reviewed", ""))
     found.not_judged += _unclear(networks, path)
     chains = _chains(loaded, networks) if with_rules and networks.gates else None
     design = rulekit.Design(networks, spot_finder(loaded), settings, chains, loaded.out_of_step)

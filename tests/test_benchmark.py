@@ -87,7 +87,10 @@ def test_tiled_board_has_the_promised_mix(board: Path) -> None:
 
 @pytest.mark.parametrize(("command", "most"), [("gates", 0.25), ("review", 0.6)])
 def test_takes_a_share_of_plain_parsing(installed: Path, board: Path, command: str, most: float) -> None:
-    """Reading and finding the networks takes a quarter; following the copper of every gate is the rest."""
+    """Reading and finding the networks takes a quarter; following the copper of every gate is the rest.
+
+    The quarter was asked of the whole review; with the copper rules it is not reached yet. Measured: 0.18 and 0.48.
+    """
     plain = "import sexpdata, sys; sexpdata.loads(open(sys.argv[1]).read())"
     ratios = []
     seconds(installed / "gatecheck", command, board)

@@ -110,9 +110,11 @@ def _moved(board: Design, schematic: Design, twins: Mapping[str, str]) -> tuple[
         shared += [MovedPin(key, p.number, p.net, nets[p.number]) for p in board.parts[key].pins if p.number in nets]
     overlap = Counter((pin.board_net, pin.schematic_net) for pin in shared if pin.board_net)
     partner: dict[str, str] = {}
+    taken: set[str] = set()
     for (net, drawn), _ in sorted(overlap.items(), key=lambda item: (-item[1], item[0][0] != item[0][1], item[0])):
-        if net not in partner and drawn not in partner.values():
+        if net not in partner and drawn not in taken:
             partner[net] = drawn
+            taken.add(drawn)
     company: dict[str, int] = defaultdict(int)
     for pin in shared:
         company[pin.schematic_net] += 1

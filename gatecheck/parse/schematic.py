@@ -93,6 +93,7 @@ class SheetFile:
     junctions: list[Point] = field(default_factory=list)
     bus_aliases: dict[str, list[str]] = field(default_factory=dict)
     named_instances: dict[str, dict[str, str]] = field(default_factory=dict)
+    variants: set[str] = field(default_factory=set)
     troubles: list[InputError] = field(default_factory=list)
 
 
@@ -203,7 +204,7 @@ def _symbol(sheet: SheetFile, span: Span) -> None:
             fields=_properties(node),
             fitted=not ("dnp" in said and flag(said["dnp"])),
             on_board="on_board" not in said or flag(said["on_board"]),
-            instances=_instances(node),
+            instances=_instances(sheet, node),
             alternates={
                 text(pin): text(chosen) for pin in node.forms("pin") if (chosen := pin.form("alternate")) is not None
             },
@@ -215,7 +216,7 @@ def _symbol(sheet: SheetFile, span: Span) -> None:
 _SYMBOL_FORMS = frozenset(("lib_name", "lib_id", "mirror", "unit", "convert", "body_style", "uuid", "dnp", "on_board"))
 
 
-def _instances(node: Node) -> tuple[Instance, ...]:
+def _instances(sheet: SheetFile, node: Node) -> tuple[Instance, ...]:
     found = []
     for group in node.forms("instances"):
         for project in group.forms("project"):
@@ -223,6 +224,9 @@ def _instances(node: Node) -> tuple[Instance, ...]:
                 reference, unit = path.form("reference"), path.form("unit")
                 if reference is not None:
                     found.append(Instance(text(path), text(reference), whole(unit) if unit is not None else 1))
+                # What they change is left unread; that they exist is said.
+                names = (form.form("name") or form for form in path.forms("variant"))
+                sheet.variants.update(text(name) for name in names if name.atoms())
     return tuple(found)
 
 

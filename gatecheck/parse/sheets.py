@@ -57,6 +57,11 @@ class Hierarchy:
         return len(self.uses) >= _MOST_USES or self.drawn > _MOST_DRAWN
 
     @property
+    def variants(self) -> list[str]:
+        """The named variants of the design; what is read is the design without any of them."""
+        return sorted({name for file in self.files.values() for name in file.variants})
+
+    @property
     def root(self) -> SheetFile:
         """The root sheet's file."""
         return self.uses[0].file

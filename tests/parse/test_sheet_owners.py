@@ -2,7 +2,6 @@
 
 from __future__ import annotations
 
-import json
 from typing import TYPE_CHECKING
 
 import pytest
@@ -92,7 +91,14 @@ def test_copies_of_editors_are_no_projects(project: Path) -> None:
     (project / "_autosave-drive.kicad_sch").write_text(LEAF)
     (project / "drive-backups").mkdir()
     (project / "drive-backups" / "x.kicad_sch").write_text(LEAF)
-    assert json.dumps(len(find_projects([project]))) == "1"
+    assert len(find_projects([project])) == 1
+
+
+def test_variants_are_said_not_to_be_reviewed(project: Path) -> None:
+    other = '(instances (project "p" (path "/top" (reference "P1") (unit 1) (variant (name "Lean") (dnp yes)))))'
+    (project / "drive.kicad_sch").write_text(file(symbol("P", "P1", "0 0", other)))
+    (entry,) = review([project / "drive.kicad_sch"]).not_judged
+    assert entry.reason == "variants Lean: the design without them is reviewed"
 
 
 @pytest.mark.parametrize("name", ["a\\x00b.kicad_sch", "x" * 5000, "a\\nb", "", "leg", "."])
